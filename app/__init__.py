@@ -1,0 +1,1 @@
+"""The window, the printed sheets and the command line of Gainwright."""
