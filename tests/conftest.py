@@ -23,7 +23,7 @@ _home_number = itertools.count()
 
 
 def pytest_addoption(parser: pytest.Parser) -> None:
-    """Know the Qt options of pyproject.toml where pytest-qt is absent: the engine is tested without Qt too."""
+    """Know the Qt options of pyproject.toml where pytest-qt is absent: the engine is tested without it."""
     if not QT_INSTALLED:
         for name in ("qt_api", "qt_log_level_fail"):
             parser.addini(name, "option of pytest-qt, unused here")
