@@ -1,0 +1,208 @@
+"""A compiled project: its graph, its rows, and where every stage, port and net stands in them."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from engine.bands import Axis
+from engine.graph import Graph, Index
+from engine.project import Project
+from engine.rows import NoisePart, Rows
+from engine.sections.base import NEVER, Active, ActiveStage, Domain, PassiveStage, StageSections
+from engine.stages import Values
+
+from .fill import Table, fill_arrivals, fill_net, fill_pairs, fill_stage
+from .layout import Layout, lay_out
+from .ranking import rank_rows
+
+
+@dataclass(frozen=True)
+class NodeRef:
+    """One node: a stage's input or output. `row` carries its level.
+
+    `own` is the section row whose clip point the node has (at its input for "in", at its output for "out"), None
+    where the stage has none of its own and the driver's is carried along.
+    """
+
+    stage: str
+    port: str
+    direction: str  # "in" or "out"
+    index: int
+    domain: Domain
+    row: int
+    own: int | None
+
+
+@dataclass(frozen=True, eq=False)
+class Plan:
+    """What `solve` needs, and the names to read its answer by. Rows are numbered as the graph has them."""
+
+    project: Project
+    axis: Axis
+    graph: Graph
+    rows: Rows
+    answers: Mapping[str, StageSections]
+    layout: Layout
+    place: Index
+    nodes: tuple[NodeRef, ...]
+    overrides: Mapping[str, Values]
+    batch: int
+
+    def section_row(self, stage: str, section: str) -> int:
+        """Where a section's output stands."""
+        answer = self.answers[stage]
+        assert isinstance(answer, ActiveStage)
+        names = [s.name for s in answer.sections]
+        return int(self.place[self.layout.section_rows[stage][names.index(section)]])
+
+    def section_list(self, stage: str) -> list[tuple[Active, int]]:
+        """An active stage's sections with their rows; empty for a passive one."""
+        answer = self.answers[stage]
+        if isinstance(answer, PassiveStage):
+            return []
+        return [(s, int(self.place[r])) for s, r in zip(answer.sections, self.layout.section_rows[stage], strict=True)]
+
+    def input_row(self, stage: str, port: str = "in") -> int:
+        """Where the level at an input stands; silence (0) where nothing feeds it."""
+        return int(self.place[self.layout.input_rows.get((stage, port), 0)])
+
+    def output_row(self, stage: str, port: str = "out") -> int:
+        """Where the level at an output stands, as loaded."""
+        return int(self.place[self.layout.output_rows[stage, port]])
+
+    def open_row(self, stage: str, port: str = "out") -> int:
+        """Where an output's open-circuit level stands, ahead of its own impedance."""
+        return int(self.place[self.layout.open_rows[stage, port]])
+
+    def arrival_row(self, link: str) -> int:
+        """Where one acoustic link's share of its stage's input stands."""
+        return int(self.place[self.layout.arrival_rows[link]])
+
+
+def build_plan(
+    project: Project, axis: Axis | None = None, *, overrides: Mapping[str, Values] | None = None, batch: int = 1
+) -> Plan:
+    """Compile a project. `overrides` puts other values in place of some stages' (or links') own, arrays [batch, 1].
+
+    Raises `PassiveLoopError` for a ring of passive sections, ValueError where a stage cannot answer.
+    """
+    axis = axis or project.axis()
+    overrides = dict(overrides or {})
+    answers = {key: _answer(project, key, axis, overrides) for key in project.topology.order}
+    layout = lay_out(project, answers)
+    emitting = [row for _, row in layout.emitting]
+    graph, place = rank_rows(layout.draft, emitting, frozenset(layout.dynamic))
+    table = Table.empty(graph, batch, axis)
+    for stage in answers:
+        fill_stage(table, layout, place, answers, stage, axis)
+    for net in layout.nets:
+        fill_net(table, net, place, project, answers, axis)
+    fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
+    fill_pairs(table, graph)
+    nodes = tuple(_nodes(project, answers, layout, place))
+    return Plan(project, axis, graph, table.rows(), answers, layout, place, nodes, overrides, batch)
+
+
+def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | None:
+    """The plan with the rows of some stages or links written anew; None where the shape has changed.
+
+    `changed` are the ids that differ between `plan.project` and `project`.
+    """
+    changed = set(changed)
+    stages = [key for key in changed if key in project.stage]
+    if any(key not in plan.answers for key in stages) or not changed <= project.stage.keys() | project.link.keys():
+        return None
+    if project.axis() is not plan.axis and project.axis(plan.axis.tone_hz) is not plan.axis:
+        return None
+    fresh = {key: _answer(project, key, plan.axis, plan.overrides) for key in stages}
+    answers = {**plan.answers, **fresh}
+    if any(_shape(fresh[key]) != _shape(plan.answers[key]) for key in stages) or _moved_links(plan.project, project, changed):
+        return None
+    table = Table.copied(plan.rows)
+    for key in stages:
+        fill_stage(table, plan.layout, plan.place, answers, key, plan.axis)
+    for net in plan.layout.nets:
+        if net.shape.stages & changed and any(
+            key in net.shape.stages and _impedances(answers[key]) != _impedances(plan.answers[key]) for key in stages
+        ):
+            fill_net(table, net, plan.place, project, answers, plan.axis)
+    near = {
+        link.id for link in project.links if link.id in changed or link.target in changed or link.source in changed
+    }  # fmt: skip
+    links = [link for link in project.links if link.id in near]
+    fill_arrivals(table, plan.layout, plan.place, project, answers, plan.axis, links, plan.overrides)
+    fill_pairs(table, plan.graph)
+    return replace(plan, project=project, rows=table.rows(), answers=answers)
+
+
+def _answer(project: Project, key: str, axis: Axis, overrides: Mapping[str, Values]) -> StageSections:
+    stage = project.stage[key]
+    values = overrides[key] if key in overrides else stage.values()
+    return stage.sections(values.replaced({"temperature_k": project.header.temperature_k}), axis)
+
+
+def _shape(answer: StageSections) -> tuple[object, ...]:
+    """What must stay the same for rows to be written anew in place."""
+    if isinstance(answer, PassiveStage):
+        return (tuple(answer.arms), tuple(answer.legs))
+    return (
+        tuple((s.name, s.after, s.dynamics is None) for s in answer.sections),
+        tuple((name, port.section) for name, port in answer.inputs.items()),
+        tuple((name, port.section, port.form) for name, port in answer.outputs.items()),
+        answer.emission is None,
+        answer.join,
+    )
+
+
+def _moved_links(before: Project, after: Project, changed: set[str]) -> bool:
+    for key in changed & after.link.keys():
+        old, new = before.link.get(key), after.link[key]
+        if old is None or (old.source, old.output, old.target, old.input, old.wiring) != (
+            new.source, new.output, new.target, new.input, new.wiring
+        ):  # fmt: skip
+            return True
+    return any(before.stage[key].count != after.stage[key].count for key in changed & after.stage.keys() & before.stage.keys())
+
+
+def _impedances(answer: StageSections) -> object:
+    if isinstance(answer, PassiveStage):
+        return [
+            np.asarray(term).tobytes()
+            for two in (*answer.arms.values(), *answer.legs.values())
+            for term in (two.a, two.b, two.c, two.d)
+        ]
+    ports = (*answer.inputs.values(), *answer.outputs.values())
+    return [np.asarray(port.z_ohm).tobytes() for port in ports]
+
+
+def _nodes(
+    project: Project, answers: Mapping[str, StageSections], layout: Layout, place: Index
+) -> Iterable[NodeRef]:
+    for key in project.topology.order:
+        stage, answer = project.stage[key], answers[key]
+        for index, port in enumerate(stage.inputs()):
+            row = int(place[layout.input_rows.get((key, port.name), 0)])
+            own = None
+            if isinstance(answer, ActiveStage):
+                first = answer.inputs[port.name].section
+                own = _own(layout, place, answer, key, first, "clip_in")
+            yield NodeRef(key, port.name, "in", index, port.domain, row, own)
+        for index, port in enumerate(p for p in stage.outputs() if not p.tap):
+            row = int(place[layout.output_rows[key, port.name]])
+            own = None
+            if isinstance(answer, ActiveStage):
+                own = _own(layout, place, answer, key, answer.outputs[port.name].section, "clip_out")
+            yield NodeRef(key, port.name, "out", index, port.domain, row, own)
+
+
+def _own(layout: Layout, place: Index, answer: ActiveStage, key: str, name: str, side: str) -> int | None:
+    for section, row in zip(answer.sections, layout.section_rows[key], strict=True):
+        if section.name == name:
+            return int(place[row]) if np.all(np.asarray(getattr(section, side)) < NEVER) else None
+    return None
+
+
+__all__ = ["NodeRef", "NoisePart", "Plan", "build_plan", "rewritten"]

@@ -1,0 +1,1 @@
+"""What stages share: section types, filters, converters, dynamics, two-ports, attenuator laws."""
