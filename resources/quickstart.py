@@ -257,7 +257,7 @@ def is_installed(extras: "set[str]") -> bool:
 
 
 def pip_install(what: "list[str]") -> None:
-    shown = ("Collecting", "Downloading", "Installing collected", "Building", "Successfully")
+    shown = ("Downloading", "Installing collected")
     command = [python_inside(), "-m", "pip", "install", "--no-input", "-c", str(CONSTRAINTS), *what]
     status, tail = follow(command, show=shown)
     if status:

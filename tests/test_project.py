@@ -77,7 +77,7 @@ def test_the_import_contracts_hold(monkeypatch):
     ],
 )
 def test_importing_a_module_does_not_load(module, unwanted):
-    """What the import contracts cannot say: they know a package outside only as a whole, and not its parts."""
+    """What the import contracts cannot say: they know an outside package as a whole, not its parts."""
     script = f"import sys, {module}; print(*sys.modules)"
     loaded = subprocess.run(
         [sys.executable, "-c", script], cwd=ROOT, capture_output=True, text=True, check=True
