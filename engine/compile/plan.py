@@ -23,8 +23,8 @@ from .ranking import rank_rows
 class NodeRef:
     """One node: a stage's input or output. `row` carries its level.
 
-    `own` is the section row whose clip point the node has (at its input for "in", at its output for "out"), None
-    where the stage has none of its own and the driver's is carried along.
+    `section` is the row of the section behind an input or ahead of an output, None in a passive stage;
+    `has_clip` whether that section has a clip point of its own there, or the driver's is carried along.
     """
 
     stage: str
@@ -33,7 +33,8 @@ class NodeRef:
     index: int
     domain: Domain
     row: int
-    own: int | None
+    section: int | None
+    has_clip: bool
 
 
 @dataclass(frozen=True, eq=False)
@@ -185,24 +186,24 @@ def _nodes(
         stage, answer = project.stage[key], answers[key]
         for index, port in enumerate(stage.inputs()):
             row = int(place[layout.input_rows.get((key, port.name), 0)])
-            own = None
-            if isinstance(answer, ActiveStage):
-                first = answer.inputs[port.name].section
-                own = _own(layout, place, answer, key, first, "clip_in")
-            yield NodeRef(key, port.name, "in", index, port.domain, row, own)
+            name = answer.inputs[port.name].section if isinstance(answer, ActiveStage) else None
+            yield NodeRef(key, port.name, "in", index, port.domain, row, *_section(layout, place, answer, key, name, "clip_in"))
         for index, port in enumerate(p for p in stage.outputs() if not p.tap):
             row = int(place[layout.output_rows[key, port.name]])
-            own = None
-            if isinstance(answer, ActiveStage):
-                own = _own(layout, place, answer, key, answer.outputs[port.name].section, "clip_out")
-            yield NodeRef(key, port.name, "out", index, port.domain, row, own)
+            name = answer.outputs[port.name].section if isinstance(answer, ActiveStage) else None
+            yield NodeRef(key, port.name, "out", index, port.domain, row, *_section(layout, place, answer, key, name, "clip_out"))
 
 
-def _own(layout: Layout, place: Index, answer: ActiveStage, key: str, name: str, side: str) -> int | None:
+def _section(
+    layout: Layout, place: Index, answer: StageSections, key: str, name: str | None, side: str
+) -> tuple[int | None, bool]:
+    """The row of a section by name, and whether it has a clip point on that side."""
+    if isinstance(answer, PassiveStage):
+        return None, False
     for section, row in zip(answer.sections, layout.section_rows[key], strict=True):
         if section.name == name:
-            return int(place[row]) if np.all(np.asarray(getattr(section, side)) < NEVER) else None
-    return None
+            return int(place[row]), bool(np.all(np.asarray(getattr(section, side)) < NEVER))
+    raise ValueError(f"stage {key!r} names a section {name!r} it does not have")
 
 
 __all__ = ["NodeRef", "NoisePart", "Plan", "build_plan", "rewritten"]

@@ -13,7 +13,7 @@ from .declared import Declared, Values
 __all__ = ["KINDS", "ControlRange", "ControlSpec", "FigureSpec", "OptionSpec", "Declared", "Port", "Setting", "Stage",
            "Values", "collect", "template"]  # fmt: skip
 
-_NOT_KINDS = {"base", "declare", "declared", "panel"}
+_NOT_KINDS = {"assumed", "base", "declare", "declared", "panel"}
 
 
 def collect() -> Mapping[str, type[Stage]]:

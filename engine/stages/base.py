@@ -37,6 +37,8 @@ class Stage(Declared):
     order: ClassVar[int] = 100  # place on the shelf
     domain: ClassVar[Domain] = Domain.ANALOGUE  # gives the block its shape
     help: ClassVar[str] = ""
+    is_seat: ClassVar[bool] = False  # people listen here: it has `target_spl_db`, `ambient`, `role`
+    is_loudspeaker: ClassVar[bool] = False  # voice coils driven by an amplifier: it answers `load_ohm` and `rated_w`
 
     id: str = Field(min_length=1, max_length=80)
     kind: str
@@ -76,6 +78,14 @@ class Stage(Declared):
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         """Reasons why these figures cannot be true together; each becomes a refusal when typed."""
         return iter(())
+
+    def load_ohm(self, values: Values) -> Number:
+        """The impedance that turns a loudspeaker's voltage into watts [ohm]."""
+        raise NotImplementedError(f"{type(self).__name__} is no loudspeaker")
+
+    def rated_w(self, values: Values, rating: str) -> float | None:
+        """A loudspeaker's "continuous" or "peak" rating [W], all its drivers together; None where not given."""
+        return None
 
     def sharpest_q(self) -> float:
         """The sharpest filter's Q; above 8 the whole project takes more points a band."""

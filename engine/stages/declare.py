@@ -35,6 +35,7 @@ class FigureSpec:
     typical: str | None
     optional: bool
     many: bool = False
+    references: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -97,14 +98,21 @@ class ControlRange:
 
 
 def figure(
-    label: str, quantity: str, typical: str | None = None, *, help: str, many: bool = False
+    label: str,
+    quantity: str,
+    typical: str | None = None,
+    *,
+    help: str,
+    many: bool = False,
+    references: tuple[str, ...] = (),
 ) -> Any:
     """Declare a figure. Without a typical value it is optional and starts empty.
 
     `help` says what it is, where it stands on a data sheet and what is usual. `many` figures are tuples.
+    `references` are what an S/N without one may refer to, the quietest first.
     """
     spec = {"label": label, "quantity": quantity, "help": help, "typical": typical,
-            "optional": typical is None, "many": many}  # fmt: skip
+            "optional": typical is None, "many": many, "references": references}  # fmt: skip
     extra: dict[str, Any] = {"figure": spec}
     if many:
         texts = tuple(part.strip() for part in (typical or "").split(";") if part.strip())

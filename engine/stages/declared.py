@@ -5,14 +5,18 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 from functools import lru_cache
-from typing import Any, Self
+from typing import Any, Literal, Self
 
 from pydantic import BaseModel, ConfigDict, model_validator
 
 from engine.figures import Figure, FigureError, Parsed, parse
 from engine.sections.base import Number
 
+from .assumed import alternatives
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
+
+
+Side = Literal["low", "mid", "high"]
 
 
 @dataclass(frozen=True)
@@ -99,15 +103,37 @@ class Declared(BaseModel):
         """The named positions of a switch; a kind may derive them from its figures."""
         return self.control_specs()[name].choices
 
-    def values(self) -> Values:
-        """All figures and controls as base-unit numbers and words."""
+    def values(self, side: Side = "mid") -> Values:
+        """All figures and controls as base-unit numbers and words.
+
+        `side` "low" and "high" take the lower or upper end of typed intervals and of what a sheet leaves unsaid;
+        "mid" takes the amount as typed, and the noisier meaning of what is unsaid.
+        """
         numbers: dict[str, Number] = {}
         tags: dict[str, str] = {}
         for name, spec, given in self.figures():
-            put_parsed(numbers, tags, name, parse(given.text, spec.quantity))
+            parsed = parse(given.text, spec.quantity)
+            put_parsed(numbers, tags, name, parsed)
+            if side != "mid":
+                end = parsed.low if side == "low" else parsed.high
+                numbers[name] = parsed.amount if end is None else end
+            for choice in alternatives(parsed, spec):
+                chosen = choice[0] if side == "low" else choice[-1]
+                numbers[name] = numbers[name] * chosen.factor
+                numbers.update({f"{name}.{key}": amount for key, amount in chosen.numbers.items()})
+                tags.update({f"{name}.{key}": word for key, word in chosen.tags.items()})
         for name, _, setting in self.controls():
             numbers[name] = float("-inf") if setting.value is None else setting.value
         return Values(numbers, tags)
+
+    def unsaid(self) -> Iterator[tuple[str, FigureSpec, Figure, str]]:
+        """Figures that leave something open: name, spec, figure, and what it may have meant in words."""
+        for name, spec, given in self.figures():
+            parsed = parse(given.text, spec.quantity)
+            for choice in alternatives(parsed, spec):
+                yield name, spec, given, f"{choice[0].says} or {choice[-1].says}"
+            if parsed.low is not None and parsed.high is not None:
+                yield name, spec, given, "anything in the range given"
 
     def with_control(self, name: str, value: float | None) -> Self:
         """The same stage with one control moved."""
