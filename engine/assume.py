@@ -2,20 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
 
 from .compile import Plan, build_plan
-from .levels import NUMBERS, node_columns
+from .levels import NUMBERS, Bounds, node_columns
 from .margins import find_margins
 from .project import Project
-from .rows import Array
 from .solve import Solution, solve
 from .stages import Values
-
-Bounds = tuple[Mapping[str, Array], Mapping[str, Array]]
 
 
 @dataclass(frozen=True)

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from math import isfinite
 from typing import Any
 
 import numpy as np
@@ -20,6 +21,7 @@ ZERO_POWER: Mapping[Domain, float] = {
 }  # fmt: skip
 UNIT: Mapping[Domain, str] = {Domain.ANALOGUE: "dBu", Domain.DIGITAL: "dBFS", Domain.ACOUSTIC: "dB SPL"}
 
+Bounds = tuple[Mapping[str, Array], Mapping[str, Array]]
 NUMBERS = ("level", "peak", "clip", "ceiling", "headroom", "peak_margin", "noise", "noise_a", "snr")
 
 
@@ -106,22 +108,18 @@ def node_columns(plan: Plan, solution: Solution, margins: Margins, sum_kind: int
     }
 
 
-def node_levels(plan: Plan, columns: Mapping[str, Array], bounds: tuple[Mapping[str, Array], Mapping[str, Array]] | None) -> tuple[NodeLevels, ...]:
-    """Every node in signal order, from its columns; `bounds` are the lowest and highest of each number."""
-    found = []
-    for place, ref in enumerate(plan.nodes):
-        numbers = {name: _number(columns[name][place, 0]) for name in NUMBERS}
-        low, high = _interval(bounds, place) if bounds else ({}, {})
-        found.append(
-            NodeLevels(
-                ref.stage, plan.project.stage[ref.stage].name, ref.port, ref.direction, ref.index, ref.domain, UNIT[ref.domain],
-                muted=numbers["level"] is None, full_scale_dbu=full_scale_dbu(plan, ref), low=low, high=high, **numbers,
-            )
-        )  # fmt: skip
-    return tuple(found)
+def node_levels(plan: Plan, line: Sequence[float], bounds: Bounds | None, place: int) -> NodeLevels:
+    """One node by its place among the plan's. `line` are its nine NUMBERS, `bounds` the lowest and highest of each."""
+    ref = plan.nodes[place]
+    numbers = {name: value if isfinite(value) else None for name, value in zip(NUMBERS, line, strict=True)}
+    low, high = _interval(bounds, place) if bounds else ({}, {})
+    return NodeLevels(
+        ref.stage, plan.project.stage[ref.stage].name, ref.port, ref.direction, ref.index, ref.domain, UNIT[ref.domain],
+        muted=numbers["level"] is None, full_scale_dbu=full_scale_dbu(plan, ref), low=low, high=high, **numbers,
+    )  # fmt: skip
 
 
-def _interval(bounds: tuple[Mapping[str, Array], Mapping[str, Array]], place: int) -> tuple[dict[str, float], dict[str, float]]:
+def _interval(bounds: Bounds, place: int) -> tuple[dict[str, float], dict[str, float]]:
     low, high = {}, {}
     for name in NUMBERS:
         bottom, top = float(bounds[0][name][place]), float(bounds[1][name][place])

@@ -15,6 +15,7 @@ from .assume import Assumptions, assume
 from .compile import NodeRef, Plan, build_plan, rewritten
 from .findings import Finding, find
 from .levels import (
+    NUMBERS,
     BandLevels,
     NodeLevels,
     SectionLevels,
@@ -50,6 +51,7 @@ class Outcome:
     plan: Plan
     solution: Solution
     sum_kind: int = FLAT
+    _nodes: dict[int, NodeLevels] = field(default_factory=dict, repr=False)
     _bands: dict[NodeRef, BandLevels] = field(default_factory=dict, repr=False)
 
     @property
@@ -74,20 +76,22 @@ class Outcome:
     @cached_property
     def nodes(self) -> tuple[NodeLevels, ...]:
         """Every stage's inputs and outputs, in signal order."""
-        return node_levels(self.plan, self.columns, self.assumptions.node_bounds)
+        return tuple(self._node_at(place) for place in range(len(self.plan.nodes)))
 
     @cached_property
-    def _by_place(self) -> dict[tuple[str, str], list[NodeLevels]]:
-        places: dict[tuple[str, str], list[NodeLevels]] = {}
-        for node in self.nodes:
-            places.setdefault((node.stage, node.direction), []).append(node)
-        return places
+    def _lines(self) -> list[tuple[float, ...]]:
+        return list(zip(*(self.columns[name][:, 0].tolist() for name in NUMBERS), strict=True))
+
+    def _node_at(self, place: int) -> NodeLevels:
+        if place not in self._nodes:
+            self._nodes[place] = node_levels(self.plan, self._lines[place], self.assumptions.node_bounds, place)
+        return self._nodes[place]
 
     def node(self, stage: str, direction: str, port: str | None = None) -> NodeLevels:
         """One node; the first of its direction where no port is named. Raises KeyError where there is none."""
-        for node in self._by_place.get((stage, direction), ()):
-            if port in (None, node.port):
-                return node
+        for place in self.plan.places.get((stage, direction), ()):
+            if port in (None, self.plan.nodes[place].port):
+                return self._node_at(place)
         raise KeyError(f"{stage} has no {direction} node {port or ''}".rstrip())
 
     def sections(self, stage: str) -> tuple[SectionLevels, ...]:
@@ -151,9 +155,9 @@ class Outcome:
         out_of = {link.output for link in self.project.topology.out_of[stage] if link.target == after}
         found = []
         for direction, ports in (("in", into), ("out", out_of)):
-            nodes = self._by_place.get((stage, direction), [])
-            chosen = [node for node in nodes if node.port in ports] or nodes
-            found.extend(chosen[:1])
+            places = self.plan.places.get((stage, direction), ())
+            chosen = [place for place in places if self.plan.nodes[place].port in ports] or places
+            found.extend(self._node_at(place) for place in chosen[:1])
         return found
 
     def _loudness(self, stage: str) -> float:

@@ -49,6 +49,7 @@ class Plan:
     layout: Layout
     place: Index
     nodes: tuple[NodeRef, ...]
+    places: Mapping[tuple[str, str], tuple[int, ...]]  # where a stage's "in" or "out" nodes stand among `nodes`
     overrides: Mapping[str, Values]
     batch: int
 
@@ -104,7 +105,7 @@ def build_plan(
     fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
     fill_pairs(table, graph)
     nodes = tuple(_nodes(project, answers, layout, place))
-    return Plan(project, axis, graph, table.rows(), answers, layout, place, nodes, overrides, batch)
+    return Plan(project, axis, graph, table.rows(), answers, layout, place, nodes, _places(nodes), overrides, batch)
 
 
 def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | None:
@@ -192,6 +193,13 @@ def _nodes(
             row = int(place[layout.output_rows[key, port.name]])
             name = answer.outputs[port.name].section if isinstance(answer, ActiveStage) else None
             yield NodeRef(key, port.name, "out", index, port.domain, row, *_section(layout, place, answer, key, name, "clip_out"))
+
+
+def _places(nodes: tuple[NodeRef, ...]) -> Mapping[tuple[str, str], tuple[int, ...]]:
+    found: dict[tuple[str, str], tuple[int, ...]] = {}
+    for place, ref in enumerate(nodes):
+        found[ref.stage, ref.direction] = (*found.get((ref.stage, ref.direction), ()), place)
+    return found
 
 
 def _section(
