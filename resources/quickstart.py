@@ -52,6 +52,8 @@ WINDOW_LIBRARIES = {
     "libxcb-xfixes.so.0": "libxcb-xfixes0",
     "libxcb-xkb.so.1": "libxcb-xkb1",
     "libxkbcommon-x11.so.0": "libxkbcommon-x11-0",
+    "libwayland-client.so.0": "libwayland-client0",
+    "libwayland-cursor.so.0": "libwayland-cursor0",
     "libcups.so.2": "libcups2",
 }
 # Programs outside Python that judge our numbers and pages; the tests that need one say so when it is missing.

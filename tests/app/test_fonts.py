@@ -1,4 +1,4 @@
-"""The shipped face: two weights, tabular figures, every sign of our labels, and text that a PDF gives back."""
+"""The shipped face: two weights, tabular figures, every sign of our labels, text that a PDF gives back."""
 
 from __future__ import annotations
 
