@@ -6,8 +6,10 @@ Every text has a true minus sign and a narrow no-break space ahead of its unit. 
 from __future__ import annotations
 
 import math
+from typing import TYPE_CHECKING
 
-from engine.levels import NodeLevels
+if TYPE_CHECKING:
+    from engine.levels import NodeLevels
 
 MINUS = "−"
 THIN = "\u202f"
@@ -59,9 +61,7 @@ def volts(value: float | None, digits: int = 4) -> str:
         return NOTHING
     if value == 0.0:
         return with_unit("0", "V")
-    scale, unit = next(
-        ((s, u) for s, u in _VOLT_STEPS if abs(value) >= 0.99995 * s), _VOLT_STEPS[-1]
-    )
+    scale, unit = next(((s, u) for s, u in _VOLT_STEPS if abs(value) >= 0.99995 * s), _VOLT_STEPS[-1])
     return with_unit(figures(value / scale, digits), unit)
 
 

@@ -1,0 +1,27 @@
+"""`gainwright check FILE`: what was noticed; status 1 where something says stop."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Sequence
+
+from .arguments import Arguments, command, read_project
+
+STOP_STATUS = 1
+
+
+@command
+def run(argv: Sequence[str]) -> int:
+    """Print the findings, the gravest first; status 1 with a stop among them, 2 where the file cannot be read."""
+    from engine.outcome import evaluate
+
+    given = Arguments("check", "Print what was noticed. Status 1 where a finding says stop.").parse_args(argv)
+    findings = evaluate(read_project(given.file)).findings
+    for each in findings:
+        print(f"{each.severity:<4}  {each.message}")
+        if each.mend:
+            print(f"      {each.mend}")
+    if not findings:
+        print("Nothing to mend.")
+    sys.stdout.flush()
+    return STOP_STATUS if any(each.severity == "stop" for each in findings) else 0

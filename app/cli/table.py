@@ -1,0 +1,41 @@
+"""`gainwright table FILE`: every node, seat and loudspeaker as text, JSON or CSV."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Sequence
+from typing import TYPE_CHECKING
+
+from app import tabular
+
+from .arguments import Arguments, command, frequency_hz, read_project
+
+if TYPE_CHECKING:
+    from engine.outcome import Outcome
+
+
+@command
+def run(argv: Sequence[str]) -> int:
+    """Print the table; status 0, or 2 where the file cannot be read."""
+    from engine.outcome import evaluate
+
+    arguments = Arguments("table", "Print the level, clip point, noise and margins at every node.")
+    form = arguments.add_mutually_exclusive_group()
+    form.add_argument("--json", action="store_true", help="one JSON object, numbers unrounded")
+    form.add_argument("--csv", action="store_true", help="one line per node, numbers unrounded")
+    arguments.add_argument("--tone", metavar="HZ", type=frequency_hz, help="levels of a test tone at this frequency")
+    given = arguments.parse_args(argv)
+    outcome = evaluate(read_project(given.file), tone_hz=given.tone)
+    text = tabular.to_json(outcome) if given.json else tabular.to_csv(outcome) if given.csv else _text(outcome)
+    sys.stdout.write(text.rstrip("\n") + "\n")
+    sys.stdout.flush()
+    return 0
+
+
+def _text(outcome: Outcome) -> str:
+    tables = [tabular.aligned(tabular.node_table(outcome), left=2)]
+    if outcome.seats:
+        tables.append(tabular.aligned(tabular.seat_table(outcome)))
+    if outcome.loudspeakers:
+        tables.append(tabular.aligned(tabular.loudspeaker_table(outcome)))
+    return "\n\n".join(tables)
