@@ -39,7 +39,8 @@ class Graph:
     `first_parent` [row] is the only parent of a single row, and the first of a join. `child_*` is the same web read
     backwards: the rows each row feeds, end to end, with their weights. `emitting` are the source rows.
     `pair_of` [pair] is the row whose gain a covariance row carries, `pair_power` whether it carries the power gain
-    (two members alike) or the amplitude gain; `pair_rows` [pair] is where they stand.
+    (two members alike) or the amplitude gain; `pair_rows` [pair] is where they stand. `beyond_*` list, for each node of a net, the
+    nodes of the same net that it feeds.
     """
 
     size: int
@@ -55,6 +56,9 @@ class Graph:
     pair_rows: Index
     pair_of: Index
     pair_power: NDArray[np.bool_]
+    beyond_of: Index
+    beyond_starts: Index
+    beyond_rows: Index
 
     def parents_of(self, row: int) -> Index:
         """The rows that feed this one, covariance rows among them."""

@@ -69,7 +69,10 @@ def find_margins(graph: Graph, rows: Rows, solution: Solution, axis: Axis, sum_k
             else:
                 np.minimum.at(backward, rank.parents, backward[at])
         backward[0] = np.inf
-    return Margins(at_in, at_out, np.minimum(forward, backward), _carried(graph, rows))
+    usable = np.minimum(forward, backward)
+    if graph.beyond_of.size:
+        usable[graph.beyond_of] = np.minimum.reduceat(usable[graph.beyond_rows], graph.beyond_starts, axis=0)
+    return Margins(at_in, at_out, usable, _carried(graph, rows))
 
 
 def _margin_db(clip: Array, peak: Array) -> Array:

@@ -14,6 +14,7 @@ from engine.rows import NoisePart, Rows
 from engine.sections.base import NEVER, Active, ActiveStage, Domain, PassiveStage, StageSections
 from engine.stages import Values
 
+from .beyond import find_beyond
 from .fill import Table, fill_arrivals, fill_net, fill_pairs, fill_stage
 from .layout import Layout, lay_out
 from .ranking import rank_rows
@@ -97,6 +98,8 @@ def build_plan(
     layout = lay_out(project, answers)
     emitting = [row for _, row in layout.emitting]
     graph, place = rank_rows(layout.draft, emitting, frozenset(layout.dynamic))
+    of, starts, beyond = find_beyond(layout.nets, place)
+    graph = replace(graph, beyond_of=of, beyond_starts=starts, beyond_rows=beyond)
     table = Table.empty(graph, batch, axis)
     for stage in answers:
         fill_stage(table, layout, place, answers, stage, axis)

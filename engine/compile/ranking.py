@@ -44,6 +44,7 @@ def rank_rows(draft: Draft, emitting: Sequence[int], dynamic: frozenset[int]) ->
         pair_rows=np.array(pairs, dtype=np.intp),
         pair_of=place[np.array([ordered[i].pair_of for i in pairs], dtype=np.intp)],
         pair_power=np.array([ordered[i].twin for i in pairs], dtype=bool),
+        **dict.fromkeys(("beyond_of", "beyond_starts", "beyond_rows"), np.empty(0, dtype=np.intp)),
     )
     return graph, place
 
