@@ -29,7 +29,10 @@ NR_OCTAVE_HZ = (31.5, 63, 125, 250, 500, 1000, 2000, 4000, 8000)
 NR_A = np.array([55.4, 35.5, 22.0, 12.0, 4.8, 0.0, -3.5, -6.1, -8.0])
 NR_B = np.array([0.681, 0.790, 0.870, 0.930, 0.974, 1.000, 1.015, 1.025, 1.030])
 
-_FIRST_THIRD = {31.5: 1, 63: 4}  # the lowest of the three third-octaves of the first octave, as an index of the 31 bands
+_FIRST_THIRD = {
+    31.5: 1,
+    63: 4,
+}  # the lowest of the three third-octaves of the first octave, as an index of the 31 bands
 
 
 @dataclass(frozen=True)
@@ -51,7 +54,9 @@ def make_ambient(amount: float, reference: str) -> Ambient:
     if reference == "NC":
         return Ambient(f"NC-{amount:g}", amount, "curve", NC_OCTAVE_HZ, tuple(_nc_levels(amount).tolist()))
     if reference == "NR":
-        return Ambient(f"NR {amount:g}", amount, "curve", NR_OCTAVE_HZ, tuple((NR_A + NR_B * amount).tolist()))
+        return Ambient(
+            f"NR {amount:g}", amount, "curve", NR_OCTAVE_HZ, tuple((NR_A + NR_B * amount).tolist())
+        )
     name = f"{amount:g} dB(A)" if reference == "A" else f"{amount:g} dB"
     return Ambient(name, amount, reference)
 
@@ -71,7 +76,9 @@ def octave_power(band_power: Array, octave_hz: tuple[float, ...]) -> Array:
     return np.asarray(thirds.reshape(*thirds.shape[:-1], len(octave_hz), 3).sum(axis=-1))
 
 
-def hiss_margin(ambient: Ambient, hiss_bands: Array, hiss_db: float, hiss_a_db: float) -> tuple[float, float | None]:
+def hiss_margin(
+    ambient: Ambient, hiss_bands: Array, hiss_db: float, hiss_a_db: float
+) -> tuple[float, float | None]:
     """The smallest of (ambient - hiss) [dB], and the octave it stands in [Hz] where the ambient is a curve.
 
     `hiss_bands` are the 31 band powers [Pa²].

@@ -23,9 +23,7 @@ BAND_INDEX = np.arange(BAND_COUNT) - 17
 #: Exact base-10 mid-frequencies 1000 * 10**(n/10) [Hz], n = -17 ... 13 (IEC 61260-1).
 BAND_MID_HZ: Array = 1000.0 * 10.0 ** (BAND_INDEX / 10.0)
 #: Band edges [Hz], the first and the last clipped so that the 31 bands span exactly 19 980 Hz.
-BAND_EDGE_HZ: Array = np.concatenate(
-    ([20.0], 1000.0 * 10.0 ** ((BAND_INDEX[1:] - 0.5) / 10.0), [20_000.0])
-)
+BAND_EDGE_HZ: Array = np.concatenate(([20.0], 1000.0 * 10.0 ** ((BAND_INDEX[1:] - 0.5) / 10.0), [20_000.0]))
 BAND_WIDTH_HZ: Array = np.diff(BAND_EDGE_HZ)
 #: The 31 nominal names printed for people (IEC 61260-1).
 BAND_NOMINAL_HZ: tuple[float, ...] = (
@@ -42,9 +40,7 @@ def a_weighting_db(f_hz: ArrayLike) -> Array:
     """A-weighting [dB] at `f_hz`, any shape (IEC 61672-1, analytic form, 0 dB at 1 kHz)."""
     f2 = np.asarray(f_hz, dtype=float) ** 2
     response = (12194.217**2 * f2**2) / (
-        (f2 + 20.598997**2)
-        * np.sqrt((f2 + 107.65265**2) * (f2 + 737.86223**2))
-        * (f2 + 12194.217**2)
+        (f2 + 20.598997**2) * np.sqrt((f2 + 107.65265**2) * (f2 + 737.86223**2)) * (f2 + 12194.217**2)
     )
     return np.asarray(20.0 * np.log10(response) + 2.0, dtype=float)
 

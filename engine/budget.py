@@ -26,7 +26,9 @@ class Contribution:
     power: Array
 
 
-def contributions(graph: Graph, rows: Rows, solution: Solution, row: int, setting: int = 0) -> list[Contribution]:
+def contributions(
+    graph: Graph, rows: Rows, solution: Solution, row: int, setting: int = 0
+) -> list[Contribution]:
     """Every origin's noise at `row`, in one setting of the batch; unsorted."""
     totals: dict[Origin, Array] = defaultdict(lambda: np.zeros(rows.gain.shape[-1]))
     weight: dict[int, Array] = {row: np.ones(rows.gain.shape[-1])}
@@ -66,13 +68,22 @@ class Share:
     share: float
 
 
-def shares(found: list[Contribution], names: dict[str, str], axis: Axis, zero_power: float) -> tuple[Share, ...]:
+def shares(
+    found: list[Contribution], names: dict[str, str], axis: Axis, zero_power: float
+) -> tuple[Share, ...]:
     """The budget sorted by share, levels referred to `zero_power`."""
     flat = np.array([c.power @ axis.flat_weight for c in found])
     weighted = np.array([c.power @ axis.a_weight for c in found])
     total = flat.sum()
     lines = [
-        Share(c.origin.stage, names[c.origin.stage], c.origin.name, _db(f, zero_power), _db(a, zero_power), f / total)
+        Share(
+            c.origin.stage,
+            names[c.origin.stage],
+            c.origin.name,
+            _db(f, zero_power),
+            _db(a, zero_power),
+            f / total,
+        )
         for c, f, a in zip(found, flat.tolist(), weighted.tolist(), strict=True)
         if f > 0.0
     ]

@@ -85,7 +85,10 @@ def node_columns(plan: Plan, solution: Solution, margins: Margins, sum_kind: int
     """The nine numbers of every node as arrays [node, batch]; NaN where there is none."""
     refs = plan.nodes
     rows = np.array([ref.row for ref in refs], dtype=np.intp)
-    through = np.array([ref.section if ref.direction == "in" and ref.section is not None else ref.row for ref in refs], dtype=np.intp)
+    through = np.array(
+        [ref.section if ref.direction == "in" and ref.section is not None else ref.row for ref in refs],
+        dtype=np.intp,
+    )
     own_in = np.array([ref.direction == "in" and ref.has_clip for ref in refs], dtype=bool)
     zero = np.array([ZERO_POWER[ref.domain] for ref in refs])[:, None]
     sums = solution.sums[rows]

@@ -84,7 +84,9 @@ class Outcome:
 
     def _node_at(self, place: int) -> NodeLevels:
         if place not in self._nodes:
-            self._nodes[place] = node_levels(self.plan, self._lines[place], self.assumptions.node_bounds, place)
+            self._nodes[place] = node_levels(
+                self.plan, self._lines[place], self.assumptions.node_bounds, place
+            )
         return self._nodes[place]
 
     def node(self, stage: str, direction: str, port: str | None = None) -> NodeLevels:
@@ -100,7 +102,11 @@ class Outcome:
 
     def band_levels(self, node: NodeLevels) -> BandLevels:
         """One node by one-third-octave bands."""
-        ref = next(r for r in self.plan.nodes if (r.stage, r.port, r.direction) == (node.stage, node.port, node.direction))
+        ref = next(
+            r
+            for r in self.plan.nodes
+            if (r.stage, r.port, r.direction) == (node.stage, node.port, node.direction)
+        )
         if ref not in self._bands:
             self._bands[ref] = band_levels(self.plan, self.solution, ref)
         return self._bands[ref]
@@ -125,7 +131,9 @@ class Outcome:
             for section, row in self.plan.section_list(stage):
                 if np.isfinite(own[row]) and (best is None or own[row] < best.margin_db):
                     side = "in" if at_in[row] <= at_out[row] else "out"
-                    best = Narrowest(stage, self.project.stage[stage].name, section.name, side, float(own[row]))
+                    best = Narrowest(
+                        stage, self.project.stage[stage].name, section.name, side, float(own[row])
+                    )
         return best
 
     @cached_property
@@ -143,7 +151,7 @@ class Outcome:
 
     def trace(self, path: Sequence[str]) -> tuple[NodeLevels, ...]:
         """The nodes along a path, in order: into and out of each stage by the ports its links use."""
-        found = []
+        found: list[NodeLevels] = []
         for place, stage in enumerate(path):
             before = path[place - 1] if place else None
             after = path[place + 1] if place + 1 < len(path) else None
@@ -153,7 +161,7 @@ class Outcome:
     def _trace_nodes(self, stage: str, before: str | None, after: str | None) -> list[NodeLevels]:
         into = {link.input for link in self.project.topology.into[stage] if link.source == before}
         out_of = {link.output for link in self.project.topology.out_of[stage] if link.target == after}
-        found = []
+        found: list[NodeLevels] = []
         for direction, ports in (("in", into), ("out", out_of)):
             places = self.plan.places.get((stage, direction), ())
             chosen = [place for place in places if self.plan.nodes[place].port in ports] or places

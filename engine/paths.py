@@ -16,7 +16,11 @@ def path_through(project: Project, stage: str, loudness: Loudness) -> tuple[str,
 
 def paths(project: Project, loudness: Loudness) -> tuple[tuple[str, ...], ...]:
     """One path per stage that feeds nothing more, in signal order."""
-    ends = [key for key in project.topology.order if not project.topology.out_of[key] and project.topology.into[key]]
+    ends = [
+        key
+        for key in project.topology.order
+        if not project.topology.out_of[key] and project.topology.into[key]
+    ]
     return tuple(path_through(project, end, loudness) for end in ends)
 
 

@@ -33,9 +33,13 @@ class Link(Declared):
         "Wiring", "balanced", choices=("balanced", "one leg"),
         help="One leg: a balanced output wired to an unbalanced input. What that costs depends on the kind of output.",
     )  # fmt: skip
-    distance_m: Figure | None = figure("Distance", "length", help="From the source or loudspeaker to the microphone or seat.")
+    distance_m: Figure | None = figure(
+        "Distance", "length", help="From the source or loudspeaker to the microphone or seat."
+    )
     off_axis_db: Figure | None = figure(
-        "Off-axis loss", "loss", help="What the loudspeaker loses towards this seat; 0 dB on its axis, 6 dB at the edge of its rated angle."
+        "Off-axis loss",
+        "loss",
+        help="What the loudspeaker loses towards this seat; 0 dB on its axis, 6 dB at the edge of its rated angle.",
     )
 
     @property
@@ -48,13 +52,24 @@ class Header(Declared):
 
     name: str = Field(default="Untitled venue", min_length=1, max_length=120)
     revision: int = Field(default=1, ge=1, le=1_000_000)
-    status: Literal["plan", "as built"] = option("Status", "plan", choices=("plan", "as built"), help="Printed on every sheet.")
+    status: Literal["plan", "as built"] = option(
+        "Status", "plan", choices=("plan", "as built"), help="Printed on every sheet."
+    )
     author: str = Field(default="", max_length=120)
     note: str = Field(default="", max_length=4000)
-    temperature_c: Figure = figure("Temperature", "temperature", "20 °C", help="Sets thermal noise and air absorption.")
+    temperature_c: Figure = figure(
+        "Temperature", "temperature", "20 °C", help="Sets thermal noise and air absorption."
+    )
     humidity_percent: Figure = figure("Relative humidity", "percent", "50 %", help="Sets air absorption.")
-    tone_hz: Figure = figure("Test tone", "frequency", "1 kHz", help="The sine that readings are taken with; 400 Hz or less suits simple meters.")
-    reserve_db: Figure = figure("Wanted reserve", "level_db", "6 dB", help="Peak margins above this count as equal in a proposal.")
+    tone_hz: Figure = figure(
+        "Test tone",
+        "frequency",
+        "1 kHz",
+        help="The sine that readings are taken with; 400 Hz or less suits simple meters.",
+    )
+    reserve_db: Figure = figure(
+        "Wanted reserve", "level_db", "6 dB", help="Peak margins above this count as equal in a proposal."
+    )
 
     @property
     def called(self) -> str:
@@ -71,7 +86,7 @@ def _stage_of_its_kind(raw: Any) -> Any:
     if not isinstance(raw, dict):
         raise ValueError("a stage is an object with id, kind and name")
     kind = raw.get("kind")
-    if kind not in kinds.KINDS:
+    if not isinstance(kind, str) or kind not in kinds.KINDS:
         raise ValueError(f"kind {kind!r} is unknown here: known kinds are {', '.join(kinds.KINDS)}")
     return kinds.KINDS[kind].model_validate(raw)
 
@@ -184,7 +199,12 @@ def _changes_ports(old: Item | None, new: Item | None) -> bool:
             or old.inputs() != new.inputs() or old.outputs() != new.outputs()
         )  # fmt: skip
     if isinstance(old, Link) and isinstance(new, Link):
-        return (old.source, old.output, old.target, old.input) != (new.source, new.output, new.target, new.input)
+        return (old.source, old.output, old.target, old.input) != (
+            new.source,
+            new.output,
+            new.target,
+            new.input,
+        )
     return not (isinstance(new, Stage) and old is None)
 
 

@@ -59,7 +59,9 @@ class SeatLevels:
         """Every noise origin's own contribution, the largest first; their powers add up to the hiss."""
         names = {key: stage.name for key, stage in self.plan.project.stage.items()}
         row = self.plan.input_row(self.stage)
-        return shares(contributions(self.plan.graph, self.plan.rows, self.solution, row), names, self.plan.axis, ZERO)
+        return shares(
+            contributions(self.plan.graph, self.plan.rows, self.solution, row), names, self.plan.axis, ZERO
+        )
 
 
 def seat_levels(plan: Plan, solution: Solution, ends: Ends, sum_kind: int = FLAT) -> tuple[SeatLevels, ...]:

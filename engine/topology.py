@@ -63,30 +63,39 @@ def check_links(stages: Mapping[str, Stage], links: Iterable[Link]) -> None:
         if output.domain != port.domain:
             join = JOINED_BY[output.domain, port.domain]
             raise DomainError(
-                f"{source.name} sends an {output.domain} signal and {target.name} takes an {port.domain} one: put {join} between them"
-                .replace("an digital", "a digital")
+                f"{source.name} sends an {output.domain} signal and {target.name} takes an {port.domain} one: put {join} between them".replace(
+                    "an digital", "a digital"
+                )
             )
         quad = (link.source, link.output, link.target, link.input)
         if quad in ends:
-            raise DoubleLinkError(f"{source.name} already feeds this input of {target.name}: one link is enough")
+            raise DoubleLinkError(
+                f"{source.name} already feeds this input of {target.name}: one link is enough"
+            )
         ends.add(quad)
         if not port.many:
             if (link.target, link.input) in taken:
                 other = taken[link.target, link.input]
-                raise PortError(f"{target.name} already has {other} at this input: use a mix bus or combiner to add signals")
+                raise PortError(
+                    f"{target.name} already has {other} at this input: use a mix bus or combiner to add signals"
+                )
             taken[link.target, link.input] = source.name
         if 1 not in (source.count, target.count) and source.count != target.count:
             raise CountError(
                 f"{source.name} stands for {source.count} and {target.name} for {target.count}: make the counts equal, or one of them 1"
             )
         if source.count > 1 and target.count == 1 and not port.many:
-            raise CountError(f"{source.count} outputs of {source.name} cannot share one input of {target.name}: use a mix bus or combiner")
+            raise CountError(
+                f"{source.count} outputs of {source.name} cannot share one input of {target.name}: use a mix bus or combiner"
+            )
         feeds[link.source].append(link.target)
     _refuse_cycles(stages, feeds)
     for link in links:
         source, target = stages[link.source], stages[link.target]
         if source.column >= target.column:
-            raise GridError(f"{target.name} stands in column {target.column}: it must stand right of {source.name} in column {source.column}")
+            raise GridError(
+                f"{target.name} stands in column {target.column}: it must stand right of {source.name} in column {source.column}"
+            )
 
 
 def _end(stages: Mapping[str, Stage], key: str, link: Link) -> Stage:
@@ -120,7 +129,9 @@ def _refuse_cycles(stages: Mapping[str, Stage], feeds: Mapping[str, list[str]]) 
             trail.append((node, place + 1))
             after = below[place]
             if after in on_trail:
-                raise CycleError(f"{stages[node].name} would feed {stages[after].name}, which feeds it already: a signal path has no loops")
+                raise CycleError(
+                    f"{stages[node].name} would feed {stages[after].name}, which feeds it already: a signal path has no loops"
+                )
             if after not in done:
                 trail.append((after, 0))
                 on_trail.add(after)

@@ -91,7 +91,9 @@ class Draft:
             return SILENCE
         key = (late, early, unlike)
         if key not in self._pairs:
-            self._pairs[key] = self._twin(late) if late == early else self._taken_apart(late, early, unlike=unlike)
+            self._pairs[key] = (
+                self._twin(late) if late == early else self._taken_apart(late, early, unlike=unlike)
+            )
         return self._pairs[key]
 
     def _twin(self, row: int) -> int:
@@ -99,7 +101,9 @@ class Draft:
         draft = self.rows[row]
         if draft.sort is Sort.JOIN:
             terms = [
-                (self._between(one, two, draft.group, unlike=True), 1.0) for one, _ in draft.heard for two, _ in draft.heard
+                (self._between(one, two, draft.group, unlike=True), 1.0)
+                for one, _ in draft.heard
+                for two, _ in draft.heard
             ]
             return self._add_pair_join(terms)
         parent = draft.heard[0][0] if draft.heard else SILENCE

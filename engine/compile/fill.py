@@ -53,7 +53,14 @@ class Table:
         for array in (self.gain, self.noise, self.clip_in, self.clip_out, self.emitted):
             array.setflags(write=False)
         return Rows(
-            self.gain, self.noise, self.clip_in, self.clip_out, self.emitted, tuple(self.parts), self.dynamics, self.clip_weight
+            self.gain,
+            self.noise,
+            self.clip_in,
+            self.clip_out,
+            self.emitted,
+            tuple(self.parts),
+            self.dynamics,
+            self.clip_weight,
         )
 
     def put_noise(self, row: int, parts: Iterable[tuple[Origin, object]]) -> None:
@@ -81,7 +88,13 @@ def fill_stage(
         table.clip_in[row] = _per_setting(section.clip_in)
         table.clip_out[row] = _per_setting(section.clip_out)
         ahead, behind = np.asarray(section.noise_ahead), np.asarray(section.noise_behind)
-        table.put_noise(row, ((Origin(key, f"{section.name} input"), ahead * section.gain), (Origin(key, section.name), behind)))
+        table.put_noise(
+            row,
+            (
+                (Origin(key, f"{section.name} input"), ahead * section.gain),
+                (Origin(key, section.name), behind),
+            ),
+        )
         if section.dynamics is not None:
             table.dynamics[row] = section.dynamics
         if section.clip_weight is not None:
@@ -89,14 +102,22 @@ def fill_stage(
     if answer.emission is not None:
         source = [stage for stage, _ in layout.emitting].index(key)
         table.emitted[source, 0] = answer.emission.programme
-        peak = np.broadcast_to(np.asarray(answer.emission.programme) * answer.emission.peak_factor, table.emitted[source, 1].shape)
+        peak = np.broadcast_to(
+            np.asarray(answer.emission.programme) * answer.emission.peak_factor,
+            table.emitted[source, 1].shape,
+        )
         table.emitted[source, 1] = peak
         # The test tone is a sine: its sine-scaled peak is its level.
         table.emitted[source, 1, :, TONE] = table.emitted[source, 0, :, TONE]
 
 
 def fill_net(
-    table: Table, net: NetRows, place: Index, project: Project, answers: Mapping[str, StageSections], axis: Axis
+    table: Table,
+    net: NetRows,
+    place: Index,
+    project: Project,
+    answers: Mapping[str, StageSections],
+    axis: Axis,
 ) -> None:
     """Write a net's transfers from each driver to each node, and its thermal noise at each node."""
     solved = net.shape.with_numbers(answers, project.header.temperature_k)
@@ -106,8 +127,12 @@ def fill_net(
             row = int(place[net.by_driver[place_, node]])
             table.gain[row] = np.abs(np.asarray(solved.transfer(place_, node))) ** 2
             table.clip_out[row] = _clip_behind_link(net, answers, stage, port, node, table.gain[row])
-        densities = [(Origin(str(edge.owner), "thermal"), edge, solved.noise_v2_per_hz(edge, node)) for edge in noisy]
-        table.put_noise(int(place[drafted]), ((origin, np.asarray(d) * axis.width_hz) for origin, _, d in densities))
+        densities = [
+            (Origin(str(edge.owner), "thermal"), edge, solved.noise_v2_per_hz(edge, node)) for edge in noisy
+        ]
+        table.put_noise(
+            int(place[drafted]), ((origin, np.asarray(d) * axis.width_hz) for origin, _, d in densities)
+        )
 
 
 def _dissipates(edge: Edge) -> bool:

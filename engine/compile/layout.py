@@ -35,7 +35,9 @@ class Layout:
     arrival_rows: dict[str, int] = field(default_factory=dict)
     input_rows: dict[tuple[str, str], int] = field(default_factory=dict)
     output_rows: dict[tuple[str, str], int] = field(default_factory=dict)  # as loaded
-    open_rows: dict[tuple[str, str], int] = field(default_factory=dict)  # open circuit, ahead of the output's impedance
+    open_rows: dict[tuple[str, str], int] = field(
+        default_factory=dict
+    )  # open circuit, ahead of the output's impedance
     node_rows: dict[Node, int] = field(default_factory=dict)
     nets: list[NetRows] = field(default_factory=list)
     emitting: list[tuple[str, int]] = field(default_factory=list)
@@ -81,12 +83,10 @@ def lay_out(project: Project, answers: Mapping[str, StageSections]) -> Layout:
             row = _row_of(layout, answer, key, output.section)
             layout.output_rows[key, port] = row
             layout.open_rows[key, port] = row
-            shape = net_of_driver.get((key, port))
-            if shape is None:
-                continue
-            waiting[id(shape)] -= 1
-            if not waiting[id(shape)]:
-                _add_net(layout, shape)
+            if (driven := net_of_driver.get((key, port))) is not None:
+                waiting[id(driven)] -= 1
+                if not waiting[id(driven)]:
+                    _add_net(layout, driven)
     _name_net_nodes(layout, project, answers, same)
     layout.draft.find_shared()
     return layout
@@ -109,7 +109,9 @@ def _add_active(
     for place, section in enumerate(answer.sections):
         if section.after:
             fed = [by_name[name] for name in section.after]
-            parent = fed[0] if len(fed) == 1 else layout.draft.add_join([(f, 1) for f in fed], group, "origin")
+            parent = (
+                fed[0] if len(fed) == 1 else layout.draft.add_join([(f, 1) for f in fed], group, "origin")
+            )
         elif section.name in first_of:
             parent = entering.get(section.name, SILENCE)
         else:

@@ -50,7 +50,9 @@ class Plan:
     layout: Layout
     place: Index
     nodes: tuple[NodeRef, ...]
-    places: Mapping[tuple[str, str], tuple[int, ...]]  # where a stage's "in" or "out" nodes stand among `nodes`
+    places: Mapping[
+        tuple[str, str], tuple[int, ...]
+    ]  # where a stage's "in" or "out" nodes stand among `nodes`
     overrides: Mapping[str, Values]
     batch: int
 
@@ -66,7 +68,10 @@ class Plan:
         answer = self.answers[stage]
         if isinstance(answer, PassiveStage):
             return []
-        return [(s, int(self.place[r])) for s, r in zip(answer.sections, self.layout.section_rows[stage], strict=True)]
+        return [
+            (s, int(self.place[r]))
+            for s, r in zip(answer.sections, self.layout.section_rows[stage], strict=True)
+        ]
 
     def input_row(self, stage: str, port: str = "in") -> int:
         """Where the level at an input stands; silence (0) where nothing feeds it."""
@@ -86,7 +91,11 @@ class Plan:
 
 
 def build_plan(
-    project: Project, axis: Axis | None = None, *, overrides: Mapping[str, Values] | None = None, batch: int = 1
+    project: Project,
+    axis: Axis | None = None,
+    *,
+    overrides: Mapping[str, Values] | None = None,
+    batch: int = 1,
 ) -> Plan:
     """Compile a project. `overrides` puts other values in place of some stages' (or links') own, arrays [batch, 1].
 
@@ -108,7 +117,9 @@ def build_plan(
     fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
     fill_pairs(table, graph)
     nodes = tuple(_nodes(project, answers, layout, place))
-    return Plan(project, axis, graph, table.rows(), answers, layout, place, nodes, _places(nodes), overrides, batch)
+    return Plan(
+        project, axis, graph, table.rows(), answers, layout, place, nodes, _places(nodes), overrides, batch
+    )
 
 
 def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | None:
@@ -118,20 +129,26 @@ def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | No
     """
     changed = set(changed)
     stages = [key for key in changed if key in project.stage]
-    if any(key not in plan.answers for key in stages) or not changed <= project.stage.keys() | project.link.keys():
+    if (
+        any(key not in plan.answers for key in stages)
+        or not changed <= project.stage.keys() | project.link.keys()
+    ):
         return None
     if project.axis() is not plan.axis and project.axis(plan.axis.tone_hz) is not plan.axis:
         return None
     fresh = {key: _answer(project, key, plan.axis, plan.overrides) for key in stages}
     answers = {**plan.answers, **fresh}
-    if any(_shape(fresh[key]) != _shape(plan.answers[key]) for key in stages) or _moved_links(plan.project, project, changed):
+    if any(_shape(fresh[key]) != _shape(plan.answers[key]) for key in stages) or _moved_links(
+        plan.project, project, changed
+    ):
         return None
     table = Table.copied(plan.rows)
     for key in stages:
         fill_stage(table, plan.layout, plan.place, answers, key, plan.axis)
     for net in plan.layout.nets:
         if net.shape.stages & changed and any(
-            key in net.shape.stages and _impedances(answers[key]) != _impedances(plan.answers[key]) for key in stages
+            key in net.shape.stages and _impedances(answers[key]) != _impedances(plan.answers[key])
+            for key in stages
         ):
             fill_net(table, net, plan.place, project, answers, plan.axis)
     near = {
@@ -169,7 +186,10 @@ def _moved_links(before: Project, after: Project, changed: set[str]) -> bool:
             new.source, new.output, new.target, new.input, new.wiring
         ):  # fmt: skip
             return True
-    return any(before.stage[key].count != after.stage[key].count for key in changed & after.stage.keys() & before.stage.keys())
+    return any(
+        before.stage[key].count != after.stage[key].count
+        for key in changed & after.stage.keys() & before.stage.keys()
+    )
 
 
 def _impedances(answer: StageSections) -> object:
@@ -191,11 +211,27 @@ def _nodes(
         for index, port in enumerate(stage.inputs()):
             row = int(place[layout.input_rows.get((key, port.name), 0)])
             name = answer.inputs[port.name].section if isinstance(answer, ActiveStage) else None
-            yield NodeRef(key, port.name, "in", index, port.domain, row, *_section(layout, place, answer, key, name, "clip_in"))
+            yield NodeRef(
+                key,
+                port.name,
+                "in",
+                index,
+                port.domain,
+                row,
+                *_section(layout, place, answer, key, name, "clip_in"),
+            )
         for index, port in enumerate(p for p in stage.outputs() if not p.tap):
             row = int(place[layout.output_rows[key, port.name]])
             name = answer.outputs[port.name].section if isinstance(answer, ActiveStage) else None
-            yield NodeRef(key, port.name, "out", index, port.domain, row, *_section(layout, place, answer, key, name, "clip_out"))
+            yield NodeRef(
+                key,
+                port.name,
+                "out",
+                index,
+                port.domain,
+                row,
+                *_section(layout, place, answer, key, name, "clip_out"),
+            )
 
 
 def _places(nodes: tuple[NodeRef, ...]) -> Mapping[tuple[str, str], tuple[int, ...]]:

@@ -70,13 +70,17 @@ def _depths(waits: list[list[int]]) -> list[int]:
             open_parents = [parent for parent in waits[at] if depth[parent] < 0]
             if depth[at] >= 0 or not open_parents:
                 trail.pop()
-                depth[at] = 1 + max((depth[parent] for parent in waits[at]), default=-1 if at == SILENCE else 0)
+                depth[at] = 1 + max(
+                    (depth[parent] for parent in waits[at]), default=-1 if at == SILENCE else 0
+                )
             else:
                 trail.extend(open_parents)
     return depth
 
 
-def _children(parents: list[list[tuple[int, float]]]) -> tuple[Index, Index, np.ndarray[tuple[int], np.dtype[np.float64]]]:
+def _children(
+    parents: list[list[tuple[int, float]]],
+) -> tuple[Index, Index, np.ndarray[tuple[int], np.dtype[np.float64]]]:
     children: list[list[tuple[int, float]]] = [[] for _ in parents]
     for child, heard in enumerate(parents):
         for parent, weight in heard:
@@ -87,7 +91,11 @@ def _children(parents: list[list[tuple[int, float]]]) -> tuple[Index, Index, np.
 
 
 def _ranks(
-    rows: list[DraftRow], parents: list[list[tuple[int, float]]], depths: list[int], place: Index, dynamic: set[int]
+    rows: list[DraftRow],
+    parents: list[list[tuple[int, float]]],
+    depths: list[int],
+    place: Index,
+    dynamic: set[int],
 ) -> list[Rank]:
     ranks = []
     start = 1  # silence stands alone in rank 0
@@ -104,9 +112,16 @@ def _ranks(
 
 
 def _rank(
-    rows: list[DraftRow], parents: list[list[tuple[int, float]]], singles: slice, joins: slice, dynamic: set[int], place: Index
+    rows: list[DraftRow],
+    parents: list[list[tuple[int, float]]],
+    singles: slice,
+    joins: slice,
+    dynamic: set[int],
+    place: Index,
 ) -> Rank:
-    single_parents = np.array([parents[i][0][0] if parents[i] else 0 for i in range(singles.start, singles.stop)], dtype=np.intp)
+    single_parents = np.array(
+        [parents[i][0][0] if parents[i] else 0 for i in range(singles.start, singles.stop)], dtype=np.intp
+    )
     heard = [parents[i] for i in range(joins.start, joins.stop)]
     joined = [pair for each in heard for pair in each]
     counts = [
@@ -121,7 +136,8 @@ def _rank(
         join_weights=np.array([w for _, w in joined], dtype=float),
         join_starts=np.concatenate(([0], np.cumsum([len(each) for each in heard])[:-1])).astype(np.intp),
         coherent=np.array(
-            [i - joins.start for i in range(joins.start, joins.stop) if rows[i].rule == "coherent"], dtype=np.intp
+            [i - joins.start for i in range(joins.start, joins.stop) if rows[i].rule == "coherent"],
+            dtype=np.intp,
         ),
         coherent_counts=np.array(counts, dtype=float),
         dynamic=tuple(i for i in range(singles.start, joins.stop) if i in dynamic),

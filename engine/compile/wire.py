@@ -34,7 +34,9 @@ class NetShape:
     """One net without its numbers: its edges and ends by name, the stages whose numbers it needs."""
 
     nodes: tuple[Node, ...]
-    edges: tuple[tuple[Node, Node, str, str, int, bool, float], ...]  # near, far, stage, part, copies, mirrored, scale
+    edges: tuple[
+        tuple[Node, Node, str, str, int, bool, float], ...
+    ]  # near, far, stage, part, copies, mirrored, scale
     drivers: tuple[tuple[str, str, Node], ...]  # stage, port, node
     loads: tuple[tuple[str, str, Node], ...]  # stage, input port, node
     clip_scale: Mapping[Node, float]  # power factor of the clip point behind a link
@@ -47,7 +49,9 @@ class NetShape:
             Edge(near, far, self._two_port(answers, stage, part), stage or None, copies, mirrored, scale)
             for near, far, stage, part, copies, mirrored, scale in self.edges
         )
-        drivers = tuple(Driver(node, _active(answers, stage).outputs[port].z_ohm) for stage, port, node in self.drivers)
+        drivers = tuple(
+            Driver(node, _active(answers, stage).outputs[port].z_ohm) for stage, port, node in self.drivers
+        )
         loads: dict[Node, Complex] = {}
         for stage, port, node in self.loads:
             loads[node] = loads.get(node, 0.0) + 1.0 / _active(answers, stage).inputs[port].z_ohm
@@ -147,7 +151,9 @@ def alike_into_one(project: Project, link: Link, groups: Mapping[str, str | None
 
 
 def _is_electrical(project: Project, link: Link) -> bool:
-    return any(p.name == link.output and p.domain is Domain.ANALOGUE for p in project.stage[link.source].outputs())
+    return any(
+        p.name == link.output and p.domain is Domain.ANALOGUE for p in project.stage[link.source].outputs()
+    )
 
 
 def _wiring(answers: Mapping[str, StageSections], link: Link) -> tuple[float, float]:
@@ -160,7 +166,9 @@ def _wiring(answers: Mapping[str, StageSections], link: Link) -> tuple[float, fl
 def _refuse_loops(project: Project, edges: list[tuple[Node, Node, str, str, int, bool, float]]) -> None:
     loop = find_loop(Edge(near, far, BARE) for near, far, *_ in edges)
     if loop is not None:
-        names = sorted({project.stage[node[1]].name for node in (loop.near, loop.far) if isinstance(node, tuple)})
+        names = sorted(
+            {project.stage[node[1]].name for node in (loop.near, loop.far) if isinstance(node, tuple)}
+        )
         raise PassiveLoopError(
             f"{' and '.join(names)} close a ring of passive sections: put an active stage in one of its branches"
         )

@@ -10,12 +10,13 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from enum import StrEnum
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
 Number = float | NDArray[np.float64]
-Complex = complex | float | NDArray[np.complex128] | NDArray[np.float64]
+Complex = complex | NDArray[Any]
 
 NEVER = float("inf")  # the clip point of what cannot clip
 

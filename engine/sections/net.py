@@ -140,17 +140,23 @@ class Net:
     # -- noise -----------------------------------------------------------------------------------------------
     def noise_v2_per_hz(self, edge: Edge, node: Node) -> Number:
         """Thermal noise density at `node` [V²/Hz] of the resistances in one two-port."""
-        near, far = (edge.near, edge.far) if self._is_beyond(edge.near, edge.far, node) else (edge.far, edge.near)
+        near, far = (
+            (edge.near, edge.far) if self._is_beyond(edge.near, edge.far, node) else (edge.far, edge.near)
+        )
         two = self._facing(near, far)
         feeding = self.at(near, away_from=far)
         turned = two.c + two.a * feeding
-        bare = np.abs(np.asarray(turned)) < 1e-30  # nothing feeds it and nothing shunts it: no noise current flows
+        bare = (
+            np.abs(np.asarray(turned)) < 1e-30
+        )  # nothing feeds it and nothing shunts it: no noise current flows
         turned = np.where(bare, 1.0, turned)
         z_out = (two.d + two.b * feeding) / turned
         emf2 = np.where(bare, 0.0, np.real(z_out) - np.real(feeding) / np.abs(turned) ** 2)
         loaded = 1.0 / (1.0 + z_out * self.at(far, away_from=near))
         reach = loaded * self.path(far, node)
-        return np.asarray(4.0 * BOLTZMANN_J_PER_K * self.temperature_k * np.maximum(emf2, 0.0) * np.abs(reach) ** 2)
+        return np.asarray(
+            4.0 * BOLTZMANN_J_PER_K * self.temperature_k * np.maximum(emf2, 0.0) * np.abs(reach) ** 2
+        )
 
     def _is_beyond(self, near: Node, far: Node, node: Node) -> bool:
         """Whether `node` lies on `far`'s side of the edge."""

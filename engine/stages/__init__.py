@@ -10,8 +10,20 @@ from .base import Port, Stage
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
 from .declared import Declared, Values
 
-__all__ = ["KINDS", "ControlRange", "ControlSpec", "FigureSpec", "OptionSpec", "Declared", "Port", "Setting", "Stage",
-           "Values", "collect", "template"]  # fmt: skip
+__all__ = [
+    "KINDS",
+    "ControlRange",
+    "ControlSpec",
+    "Declared",
+    "FigureSpec",
+    "OptionSpec",
+    "Port",
+    "Setting",
+    "Stage",
+    "Values",
+    "collect",
+    "template",
+]  # fmt: skip
 
 _NOT_KINDS = {"assumed", "base", "declare", "declared", "panel"}
 

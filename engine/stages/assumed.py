@@ -53,7 +53,7 @@ _UNSAID: Mapping[tuple[str, str], tuple[Alternative, ...]] = {
 
 def alternatives(parsed: Parsed, spec: FigureSpec) -> list[tuple[Alternative, ...]]:
     """For each thing the text leaves unsaid, what it may have meant, quietest first."""
-    found = []
+    found: list[tuple[Alternative, ...]] = []
     for unsaid in parsed.missing:
         if unsaid == "weighting":
             found.append(_WEIGHTING)

@@ -33,12 +33,16 @@ class Stage(Declared):
     """One block of the path. Frozen; unknown fields are kept through a round trip."""
 
     title: ClassVar[str] = ""  # how the shelf names the kind
-    family: ClassVar[str] = ""  # the shelf's group: "Sources", "Inputs", "Mixing", "Processing", "Lines", "Outputs", "Places"
+    family: ClassVar[str] = (
+        ""  # the shelf's group: "Sources", "Inputs", "Mixing", "Processing", "Lines", "Outputs", "Places"
+    )
     order: ClassVar[int] = 100  # place on the shelf
     domain: ClassVar[Domain] = Domain.ANALOGUE  # gives the block its shape
     help: ClassVar[str] = ""
     is_seat: ClassVar[bool] = False  # people listen here: it has `target_spl_db`, `ambient`, `role`
-    is_loudspeaker: ClassVar[bool] = False  # voice coils driven by an amplifier: it answers `load_ohm` and `rated_w`
+    is_loudspeaker: ClassVar[bool] = (
+        False  # voice coils driven by an amplifier: it answers `load_ohm` and `rated_w`
+    )
 
     id: str = Field(min_length=1, max_length=80)
     kind: str

@@ -148,7 +148,9 @@ def switch(label: str, *, help: str, off: str = "out", on: str = "in", typical: 
                    choices=((off, 0.0), (on, 1.0)))  # fmt: skip
 
 
-def option(label: str, default: Any, *, help: str, choices: tuple[str, ...] = (), low: int = 1, high: int = 64) -> Any:
+def option(
+    label: str, default: Any, *, help: str, choices: tuple[str, ...] = (), low: int = 1, high: int = 64
+) -> Any:
     """Declare how the stage is built. A change of an option may change its ports."""
     extra: dict[str, Any] = {"option": asdict(OptionSpec("", label, help, choices, low, high))}
     return Field(default=default, title=label, description=help, json_schema_extra=extra)

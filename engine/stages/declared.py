@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
-from functools import lru_cache
+from functools import cache
 from typing import Any, Literal, Self
 
 from pydantic import BaseModel, ConfigDict, model_validator
@@ -14,7 +14,6 @@ from engine.sections.base import Number
 
 from .assumed import alternatives
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
-
 
 Side = Literal["low", "mid", "high"]
 
@@ -96,7 +95,11 @@ class Declared(BaseModel):
             return parse(given.text, self.figure_specs()[end].quantity).amount
 
         return ControlRange(
-            number(spec.low), number(spec.high), number(spec.step), spec.off_at_low, self.control_choices(name)
+            number(spec.low),
+            number(spec.high),
+            number(spec.step),
+            spec.off_at_low,
+            self.control_choices(name),
         )
 
     def control_choices(self, name: str) -> tuple[tuple[str, float], ...]:
@@ -165,7 +168,9 @@ class Declared(BaseModel):
             elif ends.choices:
                 if not any(abs(setting.value - value) < 1e-6 for _, value in ends.choices):
                     names = ", ".join(f"{value:g} ({label})" for label, value in ends.choices)
-                    raise ValueError(f"{spec.label} of {self.called} stands at {setting.value:g}: it has {names}")
+                    raise ValueError(
+                        f"{spec.label} of {self.called} stands at {setting.value:g}: it has {names}"
+                    )
             elif not ends.low - 1e-6 <= setting.value <= ends.high + 1e-6:
                 raise ValueError(
                     f"{spec.label} of {self.called} stands at {setting.value:g} {spec.unit}: "
@@ -189,7 +194,7 @@ def put_parsed(numbers: dict[str, Number], tags: dict[str, str], name: str, pars
 Specs = tuple[dict[str, FigureSpec], dict[str, ControlSpec], dict[str, OptionSpec]]
 
 
-@lru_cache(maxsize=None)
+@cache
 def _specs(kind: type[Declared]) -> Specs:
     found: Specs = ({}, {}, {})
     makers = (("figure", FigureSpec), ("control", ControlSpec), ("option", OptionSpec))
@@ -200,5 +205,5 @@ def _specs(kind: type[Declared]) -> Specs:
         for place, (key, maker) in enumerate(makers):
             if key in extra:
                 content: Any = extra[key]
-                found[place][name] = maker(**{**content, "name": name})  # type: ignore[operator]
+                found[place][name] = maker(**{**content, "name": name})
     return found

@@ -42,12 +42,26 @@ class Pad(Stage):
     family: ClassVar[str] = "Lines"
     order: ClassVar[int] = 10
     domain: ClassVar[Domain] = Domain.ANALOGUE
-    help: ClassVar[str] = "A resistive attenuator in the line. It lowers level, clip point and noise ahead of it together."
+    help: ClassVar[str] = (
+        "A resistive attenuator in the line. It lowers level, clip point and noise ahead of it together."
+    )
 
     kind: Literal["pad"] = "pad"
-    loss_db: Figure = figure("Loss", "loss", "20 dB", help="What the pad takes away, as printed on it; 10, 15, 20 and 30 dB are usual.")
-    z_ohm: Figure = figure("Impedance", "impedance", "600 ohm", help="Input impedance of a U pad, or the image impedance of an H pad.")
-    shape: Literal["U", "H"] = option("Form", "U", choices=("U", "H"), help="U: series and shunt arms. H: symmetrical, matched both ways.")
+    loss_db: Figure = figure(
+        "Loss",
+        "loss",
+        "20 dB",
+        help="What the pad takes away, as printed on it; 10, 15, 20 and 30 dB are usual.",
+    )
+    z_ohm: Figure = figure(
+        "Impedance",
+        "impedance",
+        "600 ohm",
+        help="Input impedance of a U pad, or the image impedance of an H pad.",
+    )
+    shape: Literal["U", "H"] = option(
+        "Form", "U", choices=("U", "H"), help="U: series and shunt arms. H: symmetrical, matched both ways."
+    )
     inserted: Setting = switch("Pad", help="Whether the pad is in the line.", typical=True)
 
     def inputs(self) -> tuple[Port, ...]:
@@ -61,7 +75,10 @@ class Pad(Stage):
         pad = build(values["loss_db"], values["z_ohm"])
         is_in = np.asarray(values["inserted"]) > 0.5
         switched = TwoPort(
-            np.where(is_in, pad.a, 1.0), np.where(is_in, pad.b, 0.0), np.where(is_in, pad.c, 0.0), np.where(is_in, pad.d, 1.0)
+            np.where(is_in, pad.a, 1.0),
+            np.where(is_in, pad.b, 0.0),
+            np.where(is_in, pad.c, 0.0),
+            np.where(is_in, pad.d, 1.0),
         )
         return PassiveStage({"in": switched}, {"out": TwoPort()})
 

@@ -41,7 +41,10 @@ class PlainSource(Stage):
         programme = axis.spread(np.full(31, 1.0 / 31.0)) * np.asarray(values["emf_v"]) ** 2
         noise = axis.white(4.0 * BOLTZMANN_J_PER_K * values["temperature_k"] * np.asarray(values["z_ohm"]))
         return ActiveStage(
-            (Active("source", noise_behind=noise),), {}, {"out": Output("source", values["z_ohm"])}, Emission(programme, 10.0)
+            (Active("source", noise_behind=noise),),
+            {},
+            {"out": Output("source", values["z_ohm"])},
+            Emission(programme, 10.0),
         )
 
 
@@ -64,7 +67,10 @@ class PlainAmplifier(Stage):
         gain = 10.0 ** (np.asarray(values["gain_db"]) / 10.0)
         density = np.asarray(values["noise_v"]) ** 2 / axis.white_band_hz
         return ActiveStage(
-            (Active("input", clip_in=100.0, noise_ahead=axis.white(density)), Active("gain", gain=gain, clip_out=1000.0)),
+            (
+                Active("input", clip_in=100.0, noise_ahead=axis.white(density)),
+                Active("gain", gain=gain, clip_out=1000.0),
+            ),
             {"in": Input("input", values["z_in_ohm"])},
             {"out": Output("gain", values["z_out_ohm"])},
         )
@@ -93,7 +99,14 @@ def source(id: str, column: int = 0, emf: str = "1 V", z: str = "150 ohm") -> Pl
 
 
 def amplifier(
-    id: str, column: int, gain_db: float = 0.0, *, noise: str = "1 uV", z_in: str = "10 k", z_out: str = "1 uohm", count: int = 1
+    id: str,
+    column: int,
+    gain_db: float = 0.0,
+    *,
+    noise: str = "1 uV",
+    z_in: str = "10 k",
+    z_out: str = "1 uohm",
+    count: int = 1,
 ) -> PlainAmplifier:
     return PlainAmplifier(
         id=id, name=id, column=column, count=count, noise_v=Figure(text=noise), z_in_ohm=Figure(text=z_in),

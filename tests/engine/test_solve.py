@@ -50,7 +50,9 @@ def webs(draw: st.DrawFn) -> tuple[Project, set[tuple[str, str]], dict[str, floa
             ahead = [n for group in names[:column] for n in group]
             for feeding in draw(st.lists(st.sampled_from(ahead), min_size=1, max_size=3, unique=True)):
                 links.add((feeding, name))
-    for name in draw(st.lists(st.sampled_from([n for g in names for n in g]), min_size=1, max_size=5, unique=True)):
+    for name in draw(
+        st.lists(st.sampled_from([n for g in names for n in g]), min_size=1, max_size=5, unique=True)
+    ):
         links.add((name, "end"))
     return project(stages, *sorted(links)), links, gains
 
@@ -103,7 +105,9 @@ def test_n_alike_equals_n_drawn_out(count):
     one, many = evaluate(as_one), evaluate(drawn_out)
     for stage, side in product(("a", "d"), ("in", "out")):
         for number in ("level", "noise", "peak", "clip", "ceiling"):
-            assert getattr(one.node(stage, side), number) == pytest.approx(getattr(many.node(stage, side), number), abs=1e-9)
+            assert getattr(one.node(stage, side), number) == pytest.approx(
+                getattr(many.node(stage, side), number), abs=1e-9
+            )
 
 
 def test_n_alike_with_branches_inside_equals_n_drawn_out():
@@ -132,7 +136,11 @@ def test_a_batch_row_equals_a_single_solve():
     wide = build_plan(chain, overrides={"a": chain.stage["a"].values().replaced({"gain_db": gains})}, batch=7)
     solved = solve(wide.graph, wide.rows, wide.axis)
     for place, gain in enumerate(gains[:, 0]):
-        single = build_plan(chain.with_changes({"a": (chain.stage["a"], chain.stage["a"].with_control("gain_db", float(gain)))}))
+        single = build_plan(
+            chain.with_changes(
+                {"a": (chain.stage["a"], chain.stage["a"].with_control("gain_db", float(gain)))}
+            )
+        )
         alone = solve(single.graph, single.rows, single.axis)
         again = solve(single.graph, single.rows, single.axis)
         assert np.array_equal(alone.spectra, again.spectra)
@@ -160,8 +168,16 @@ def test_rewriting_a_stage_equals_compiling_anew(stage, gain, loads):
 
 def test_bridging_loss_shows_at_the_loaded_output():
     """600 ohm into 600 ohm costs 6.02 dB and 75 ohm into 2.5 kohm 0.26 dB (definition of bridging loss)."""
-    for z_out, z_in, loss_db in (("600 ohm", "600 ohm", 6.0206), ("75 ohm", "2500 ohm", 0.2567), ("150 ohm", "10 k", 0.1293)):
-        chain = project([source("s", z="1 uohm"), amplifier("a", 1, z_out=z_out), amplifier("b", 2, z_in=z_in)], ("s", "a"), ("a", "b"))
+    for z_out, z_in, loss_db in (
+        ("600 ohm", "600 ohm", 6.0206),
+        ("75 ohm", "2500 ohm", 0.2567),
+        ("150 ohm", "10 k", 0.1293),
+    ):
+        chain = project(
+            [source("s", z="1 uohm"), amplifier("a", 1, z_out=z_out), amplifier("b", 2, z_in=z_in)],
+            ("s", "a"),
+            ("a", "b"),
+        )
         outcome = evaluate(chain)
         loss = outcome.node("a", "in").level - outcome.node("a", "out").level
         assert loss == pytest.approx(loss_db, abs=5e-4)
@@ -170,7 +186,9 @@ def test_bridging_loss_shows_at_the_loaded_output():
 
 def test_first_to_clip_and_usable_ceiling():
     """Ceiling at every node is the level there plus the smallest margin of its path: it is 3 dB over the level all along."""
-    chain = project([source("s", z="1 uohm"), amplifier("a", 1, 5.0), amplifier("b", 2, 12.0)], ("s", "a"), ("a", "b"))
+    chain = project(
+        [source("s", z="1 uohm"), amplifier("a", 1, 5.0), amplifier("b", 2, 12.0)], ("s", "a"), ("a", "b")
+    )
     outcome = evaluate(chain)
     # 1 V, crest 10 dB sine-scaled; 17 dB of gain: peak 27 dBV against 1000 V² = 30 dBV.
     assert outcome.narrowest.stage == "b"
