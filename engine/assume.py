@@ -60,7 +60,7 @@ def assume(plan: Plan, sum_kind: int) -> Assumptions:
     ends, columns = [], []
     for side in ("low", "high"):
         overrides: dict[str, Values] = {
-            key: item.values(side)  # type: ignore[arg-type]
+            key: item.values(side)
             for key, item in plan.project.items()
             if key in keys
         }

@@ -108,10 +108,10 @@ class Project(BaseModel):
     @model_validator(mode="after")
     def _ids_are_unique(self) -> Self:
         seen: set[str] = {HEADER_KEY}
-        for item in (*self.stages, *self.links):
-            if item.id in seen:
-                raise ValueError(f"id {item.id!r} stands twice: every stage and link needs its own")
-            seen.add(item.id)
+        for key in (*(stage.id for stage in self.stages), *(link.id for link in self.links)):
+            if key in seen:
+                raise ValueError(f"id {key!r} stands twice: every stage and link needs its own")
+            seen.add(key)
         return self
 
     @model_validator(mode="after")
@@ -178,8 +178,8 @@ class Project(BaseModel):
     def items(self) -> Iterator[tuple[str, Item]]:
         """Every item under its id."""
         yield HEADER_KEY, self.header
-        for each in (*self.stages, *self.links):
-            yield each.id, each
+        yield from self.stage.items()
+        yield from self.link.items()
 
     def same_as(self, other: Project) -> bool:
         """Whether the two would be written alike, whatever order their items stand in."""

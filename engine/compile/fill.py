@@ -143,7 +143,7 @@ def _clip_behind_link(
     net: NetRows, answers: Mapping[str, StageSections], stage: str, port: str, node: object, gain: Array
 ) -> Array | float:
     """The clip point at a node whose link lowers the driver's: half the swing for the same level."""
-    scale = net.shape.clip_scale.get(node)  # type: ignore[call-overload]
+    scale = net.shape.clip_scale.get(node)
     if scale is None:
         return NEVER
     answer = answers[stage]

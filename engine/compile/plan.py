@@ -199,8 +199,8 @@ def _impedances(answer: StageSections) -> object:
             for two in (*answer.arms.values(), *answer.legs.values())
             for term in (two.a, two.b, two.c, two.d)
         ]
-    ports = (*answer.inputs.values(), *answer.outputs.values())
-    return [np.asarray(port.z_ohm).tobytes() for port in ports]
+    impedances = [port.z_ohm for port in answer.inputs.values()] + [port.z_ohm for port in answer.outputs.values()]
+    return [np.asarray(z_ohm).tobytes() for z_ohm in impedances]
 
 
 def _nodes(

@@ -100,7 +100,8 @@ class Net:
             two = self._facing(near, far)
             beyond = self.at(far, away_from=near)
             self._look[key] = (two.c + two.d * beyond) / (two.a + two.b * beyond)
-        return self._look[key]
+        found: Complex = self._look[key]
+        return found
 
     # -- transfers -------------------------------------------------------------------------------------------
     def transfer(self, driver: int, node: Node) -> Complex:
