@@ -10,6 +10,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, NoReturn
 
 if TYPE_CHECKING:
+    from engine.outcome import Outcome
     from engine.project import Project
 
 ERROR_STATUS = 2
@@ -62,6 +63,16 @@ def read_project(path: Path) -> Project:
     for note in notes:
         print(f"gainwright: note: {note}", file=sys.stderr)
     return project
+
+
+def read_outcome(path: Path, tone_hz: float | None = None) -> Outcome:
+    """The project in a file, solved. Raises `CommandError`."""
+    from engine.outcome import evaluate
+
+    try:
+        return evaluate(read_project(path), tone_hz=tone_hz)
+    except ValueError as reason:
+        raise CommandError(str(reason)) from None
 
 
 def frequency_hz(text: str) -> float:

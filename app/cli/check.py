@@ -5,7 +5,7 @@ from __future__ import annotations
 import sys
 from collections.abc import Sequence
 
-from .arguments import Arguments, command, read_project
+from .arguments import Arguments, command, read_outcome
 
 STOP_STATUS = 1
 
@@ -13,10 +13,8 @@ STOP_STATUS = 1
 @command
 def run(argv: Sequence[str]) -> int:
     """Print the findings, the gravest first; status 1 with a stop among them, 2 where the file cannot be read."""
-    from engine.outcome import evaluate
-
     given = Arguments("check", "Print what was noticed. Status 1 where a finding says stop.").parse_args(argv)
-    findings = evaluate(read_project(given.file)).findings
+    findings = read_outcome(given.file).findings
     for each in findings:
         print(f"{each.severity:<4}  {each.message}")
         if each.mend:

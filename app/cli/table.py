@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from app import tabular
 
-from .arguments import Arguments, command, frequency_hz, read_project
+from .arguments import Arguments, command, frequency_hz, read_outcome
 
 if TYPE_CHECKING:
     from engine.outcome import Outcome
@@ -17,15 +17,13 @@ if TYPE_CHECKING:
 @command
 def run(argv: Sequence[str]) -> int:
     """Print the table; status 0, or 2 where the file cannot be read."""
-    from engine.outcome import evaluate
-
     arguments = Arguments("table", "Print the level, clip point, noise and margins at every node.")
     form = arguments.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="one JSON object, numbers unrounded")
     form.add_argument("--csv", action="store_true", help="one line per node, numbers unrounded")
     arguments.add_argument("--tone", metavar="HZ", type=frequency_hz, help="levels of a test tone at this frequency")
     given = arguments.parse_args(argv)
-    outcome = evaluate(read_project(given.file), tone_hz=given.tone)
+    outcome = read_outcome(given.file, given.tone)
     text = tabular.to_json(outcome) if given.json else tabular.to_csv(outcome) if given.csv else _text(outcome)
     sys.stdout.write(text.rstrip("\n") + "\n")
     sys.stdout.flush()

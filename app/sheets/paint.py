@@ -36,17 +36,18 @@ def write_pdf(target: Path, pages: Sequence[Page], title: str, progress: Progres
 
 
 def draw_pages(device: QPagedPaintDevice, pages: Sequence[Page], progress: Progress | None = None) -> None:
-    """Draw the pages one after the other, each on its own paper. Raises OSError where the device does not begin."""
-    if pages:
-        device.setPageLayout(page_layout(pages[0].paper))
+    """Draw the pages one after the other, each on its own paper. Raises OSError where the device does not begin.
+
+    A printer keeps the paper chosen in its dialog: a page that is larger is made smaller to fit.
+    """
     with _begun(device) as painter:
         for place, page in enumerate(pages):
-            if place:
-                device.setPageLayout(page_layout(page.paper))
-                if not device.newPage():
-                    raise OSError("the next page could not be started")
+            if place and not device.newPage():
+                raise OSError("the next page could not be started")
+            wide, high = page.paper.size
+            across, down = device.width() / wide, device.height() / high
             painter.save()
-            painter.scale(device.logicalDpiX() / 72.0, device.logicalDpiY() / 72.0)
+            painter.scale(min(across, down), min(across, down))
             paint_page(painter, page)
             painter.restore()
             if progress:
