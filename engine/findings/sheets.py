@@ -1,0 +1,38 @@
+"""Figures: still guesses, or leaving something open."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import TYPE_CHECKING
+
+from .registry import Finding, finder
+
+if TYPE_CHECKING:
+    from engine.outcome import Outcome
+
+
+@finder
+def figures_still_guesses(outcome: Outcome) -> Iterator[Finding]:
+    """Stages whose figures nobody has taken from a sheet or measured."""
+    for stage in outcome.project.stages:
+        guessed = [spec.label for _, spec, given in stage.figures() if given.origin == "guess"]
+        if guessed:
+            number = "1 figure is" if len(guessed) == 1 else f"{len(guessed)} figures are"
+            named = ", ".join(guessed[:3]) + (" …" if len(guessed) > 3 else "")
+            yield Finding(
+                "note", "still-a-guess", stage.id, f"{number} still a guess at {stage.name}: {named}.".replace("are still a guess", "are still guesses"),
+                "Type them from the data sheet or measure them, and mark where they came from.",
+            )  # fmt: skip
+
+
+@finder
+def figures_left_open(outcome: Outcome) -> Iterator[Finding]:
+    """Figures whose sheet does not say what they refer to: they enter as an interval."""
+    for each in outcome.assumptions.open:
+        stage = each.key if each.key in outcome.project.stage else None
+        name = outcome.project.stage[each.key].name if stage else each.key
+        yield Finding(
+            "note", "figure-left-open", stage,
+            f"{each.label} of {name}, {each.text!r}, may mean {each.meaning}: what depends on it is shown as a range.",
+            "Look on the sheet for the reference and weighting, and type them behind the number.",
+        )  # fmt: skip
