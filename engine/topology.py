@@ -63,9 +63,8 @@ def check_links(stages: Mapping[str, Stage], links: Iterable[Link]) -> None:
         if output.domain != port.domain:
             join = JOINED_BY[output.domain, port.domain]
             raise DomainError(
-                f"{source.name} sends an {output.domain} signal and {target.name} takes an {port.domain} one: put {join} between them".replace(
-                    "an digital", "a digital"
-                )
+                f"{source.name} sends {_an(output.domain)} signal and {target.name} takes {_an(port.domain)} one: "
+                f"put {join} between them"
             )
         quad = (link.source, link.output, link.target, link.input)
         if quad in ends:
@@ -96,6 +95,10 @@ def check_links(stages: Mapping[str, Stage], links: Iterable[Link]) -> None:
             raise GridError(
                 f"{target.name} stands in column {target.column}: it must stand right of {source.name} in column {source.column}"
             )
+
+
+def _an(domain: Domain) -> str:
+    return f"a {domain}" if domain is Domain.DIGITAL else f"an {domain}"
 
 
 def _end(stages: Mapping[str, Stage], key: str, link: Link) -> Stage:

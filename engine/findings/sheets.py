@@ -17,10 +17,14 @@ def figures_still_guesses(outcome: Outcome) -> Iterator[Finding]:
     for stage in outcome.project.stages:
         guessed = [spec.label for _, spec, given in stage.figures() if given.origin == "guess"]
         if guessed:
-            number = "1 figure is" if len(guessed) == 1 else f"{len(guessed)} figures are"
+            number = (
+                "1 figure is still a guess"
+                if len(guessed) == 1
+                else f"{len(guessed)} figures are still guesses"
+            )
             named = ", ".join(guessed[:3]) + (" …" if len(guessed) > 3 else "")
             yield Finding(
-                "note", "still-a-guess", stage.id, f"{number} still a guess at {stage.name}: {named}.".replace("are still a guess", "are still guesses"),
+                "note", "still-a-guess", stage.id, f"{number} at {stage.name}: {named}.",
                 "Type them from the data sheet or measure them, and mark where they came from.",
             )  # fmt: skip
 
