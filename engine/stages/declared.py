@@ -69,9 +69,20 @@ class Declared(BaseModel):
     def option_specs(cls) -> Mapping[str, OptionSpec]:
         return _specs(cls)[2]
 
+    @classmethod
+    def field_place(cls, name: str) -> int:
+        """Where a field stands among the others, smaller first; fields of one place stand as declared."""
+        return 0
+
+    def in_use(self, name: str) -> bool:
+        """Whether a figure or control counts with the options as they are; what does not is neither shown nor read."""
+        return True
+
     def figures(self) -> Iterator[tuple[str, FigureSpec, Figure]]:
-        """The figures that are given: name (numbered where there may be many), spec, figure."""
+        """The figures that are given and in use: name (numbered where there may be many), spec, figure."""
         for name, spec in self.figure_specs().items():
+            if not self.in_use(name):
+                continue
             given = getattr(self, name)
             if spec.many:
                 for index, each in enumerate(given):
@@ -80,9 +91,10 @@ class Declared(BaseModel):
                 yield name, spec, given
 
     def controls(self) -> Iterator[tuple[str, ControlSpec, Setting]]:
-        """The controls in signal order: name, spec, where each stands."""
+        """The controls in use, in signal order: name, spec, where each stands."""
         for name, spec in self.control_specs().items():
-            yield name, spec, getattr(self, name)
+            if self.in_use(name):
+                yield name, spec, getattr(self, name)
 
     def control_range(self, name: str) -> ControlRange:
         """A control's ends and steps, read from the figures that hold them."""
@@ -198,7 +210,8 @@ Specs = tuple[dict[str, FigureSpec], dict[str, ControlSpec], dict[str, OptionSpe
 def _specs(kind: type[Declared]) -> Specs:
     found: Specs = ({}, {}, {})
     makers = (("figure", FigureSpec), ("control", ControlSpec), ("option", OptionSpec))
-    for name, declared in kind.model_fields.items():
+    fields = sorted(kind.model_fields.items(), key=lambda field: kind.field_place(field[0]))
+    for name, declared in fields:
         extra = declared.json_schema_extra
         if not isinstance(extra, dict):
             continue
