@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cache
-from typing import Any, Literal, Self
+from typing import Any, Literal, Self, get_args
 
 from pydantic import BaseModel, ConfigDict, model_validator
 
@@ -219,4 +219,7 @@ def _specs(kind: type[Declared]) -> Specs:
             if key in extra:
                 content: Any = extra[key]
                 found[place][name] = maker(**{**content, "name": name})
+                if key == "figure" and type(None) in get_args(declared.annotation):
+                    # A typical value to start with, yet it may be left empty.
+                    found[0][name] = replace(found[0][name], optional=True)
     return found
