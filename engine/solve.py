@@ -105,5 +105,7 @@ def _take_dynamics(lanes: Array, rows: Rows, row: int, axis: Axis) -> NDArray[np
         heard = peak if curve.detector == "peak" else programme
         over = np.maximum(heard / threshold, 1.0)
         factor[:, :, points] = over ** (1.0 / np.asarray(curve.ratio) - 1.0) * curve.make_up
+    if curve.spares_noise:
+        factor[NOISE] = 1.0
     lanes *= factor
     return factor

@@ -12,7 +12,8 @@ from engine.figures import parse
 from engine.graph import Graph, Index
 from engine.project import Link, Project
 from engine.rows import Array, NoisePart, Origin, Rows
-from engine.sections.base import NEVER, ActiveStage, Domain, Dynamics, PassiveStage, StageSections
+from engine.sections.base import NEVER, ActiveStage, Domain, Dynamics, Output, PassiveStage, StageSections
+from engine.sections.curves import clip_at_load
 from engine.sections.net import Edge
 from engine.stages import Values
 
@@ -135,6 +136,34 @@ def fill_net(
         )
 
 
+def fill_clip_by_load(
+    table: Table, layout: Layout, net: NetRows, place: Index, project: Project, answers: Mapping[str, StageSections]
+) -> None:
+    """Write the clip points of outputs that are rated at several loads, for the load their net turns out to be.
+
+    Ratings hold at the terminals, the section's clip point ahead of the output's own impedance.
+    """
+    rated = [d for d in enumerate(net.shape.drivers) if _output(answers, d[1][0], d[1][1]).clip_by_load]
+    if not rated:
+        return
+    solved = net.shape.with_numbers(answers, project.header.temperature_k)
+    for index, (stage, port, node) in rated:
+        answer, output = answers[stage], _output(answers, stage, port)
+        assert isinstance(answer, ActiveStage)
+        admittance = np.atleast_2d(np.asarray(solved.at(node, without=index)))[:, TONE, None]
+        clip_v2 = clip_at_load(admittance, output.clip_by_load)
+        clip_v2 = clip_v2 * np.abs(1.0 + output.z_ohm * admittance) ** 2
+        names = [section.name for section in answer.sections]
+        row = int(place[layout.section_rows[stage][names.index(output.section)]])
+        table.clip_out[row] = _per_setting(clip_v2)
+
+
+def _output(answers: Mapping[str, StageSections], stage: str, port: str) -> Output:
+    answer = answers[stage]
+    assert isinstance(answer, ActiveStage)
+    return answer.outputs[port]
+
+
 def _dissipates(edge: Edge) -> bool:
     return any(np.any(np.asarray(term) != 0.0) for term in (edge.two_port.b, edge.two_port.c))
 
@@ -168,9 +197,10 @@ def fill_arrivals(
         assert isinstance(source, ActiveStage)
         given = overrides.get(link.id) or link.values()
         target_values = overrides.get(link.target) or target.values()
-        reference_m = source.outputs[link.output].reference_m
+        output = source.outputs[link.output]
+        heard = given.replaced({**air, "directivity_q": output.directivity_q})
         table.gain[int(place[layout.arrival_rows[link.id]])] = target.arrival(
-            target_values, given.replaced(air), reference_m, axis
+            target_values, heard, output.reference_m, axis
         )
 
 
@@ -186,4 +216,4 @@ def _per_setting(level: object) -> Array | float:
     return array[..., 0] if array.ndim == 2 else float(array)
 
 
-__all__ = ["Domain", "Table", "fill_arrivals", "fill_net", "fill_pairs", "fill_stage"]
+__all__ = ["Domain", "Table", "fill_arrivals", "fill_clip_by_load", "fill_net", "fill_pairs", "fill_stage"]

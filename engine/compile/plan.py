@@ -15,7 +15,7 @@ from engine.sections.base import NEVER, Active, ActiveStage, Domain, PassiveStag
 from engine.stages import Values
 
 from .beyond import find_beyond
-from .fill import Table, fill_arrivals, fill_net, fill_pairs, fill_stage
+from .fill import Table, fill_arrivals, fill_clip_by_load, fill_net, fill_pairs, fill_stage
 from .layout import Layout, lay_out
 from .ranking import rank_rows
 
@@ -114,6 +114,7 @@ def build_plan(
         fill_stage(table, layout, place, answers, stage, axis)
     for net in layout.nets:
         fill_net(table, net, place, project, answers, axis)
+        fill_clip_by_load(table, layout, net, place, project, answers)
     fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
     fill_pairs(table, graph)
     nodes = tuple(_nodes(project, answers, layout, place))
@@ -151,6 +152,8 @@ def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | No
             for key in stages
         ):
             fill_net(table, net, plan.place, project, answers, plan.axis)
+        if net.shape.stages & changed:
+            fill_clip_by_load(table, plan.layout, net, plan.place, project, answers)
     near = {
         link.id for link in project.links if link.id in changed or link.target in changed or link.source in changed
     }  # fmt: skip

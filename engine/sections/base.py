@@ -44,6 +44,7 @@ class Dynamics:
     make_up: Number = 1.0
     detector: str = "rms"
     limiter: bool = False
+    spares_noise: bool = False  # hiss is judged while nothing plays: a voice coil is cool then
 
 
 @dataclass(frozen=True)
@@ -91,12 +92,16 @@ class Output:
 
     `form` is one of "push-pull", "cross-coupled", "transformer", "impedance-balanced", "unbalanced".
     `reference_m` is the distance an acoustic output's level is stated at; None: at the receiver itself.
+    `directivity_q` is how much it throws forward. `clip_by_load` are the clip points [V²] an amplifier is rated at into
+    loads [ohm], ascending by load: the section's own is put in their place by the load the net turns out to be.
     """
 
     section: str
     z_ohm: Number = 0.0
     form: str = "push-pull"
     reference_m: Number | None = None
+    directivity_q: Number = 1.0
+    clip_by_load: tuple[tuple[Number, Number], ...] = ()
 
 
 @dataclass(frozen=True)

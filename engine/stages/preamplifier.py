@@ -11,14 +11,14 @@ from engine.bands import Axis
 from engine.figures import Figure
 from engine.sections.attenuator import is_on
 from engine.sections.base import Active, ActiveStage, Domain, Input, Number, Output, StageSections
-from engine.sections.ein import over_gain
+from engine.sections.curves import noise_over_gain
 from engine.sections.noise import thermal, white_total
 from engine.units import dbu_from_v2, power_from_db
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, switch
 from .declared import Values
-from .shared import Form, form_option, marked_db, stated_ein, stated_noise
+from .shared import Form, at_room_temperature, form_option, marked_db, stated_ein, stated_noise
 
 USUAL_SOURCE_OHM = 150.0
 
@@ -88,23 +88,25 @@ class Preamplifier(Stage):
         )  # fmt: skip
 
     def _points(self, values: Values, axis: Axis) -> list[tuple[Number, Number]]:
+        """EIN points from the lowest gain up."""
         points = [(values["gain_max_db"], stated_ein(axis, values, "ein_v"))]
         for name in ("ein_2", "ein_3"):
             if f"{name}_v" in values and f"{name}_gain_db" in values:
                 points.append((values[f"{name}_gain_db"], stated_ein(axis, values, f"{name}_v")))
-        return points
+        return points[::-1]
 
     def _input_noise(self, values: Values, axis: Axis) -> Number:
-        return over_gain(values["gain_db"], self._points(values, axis))
+        return noise_over_gain(values["gain_db"], self._points(values, axis))
 
     def _output_noise(self, values: Values, axis: Axis) -> Number:
         """What the residual at lowest gain holds beyond the input's own noise times that gain."""
         residual = stated_noise(axis, values, "residual", {"max": np.asarray(values["max_output_v"]) ** 2})
-        ein = over_gain(values["gain_min_db"], self._points(values, axis))
+        ein = noise_over_gain(values["gain_min_db"], self._points(values, axis))
         source = thermal(axis, values.get("ein_v.source_ohm", USUAL_SOURCE_OHM), values["temperature_k"])
         return np.maximum(residual - (ein + source) * power_from_db(values["gain_min_db"]), 0.0)
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
+        values = at_room_temperature(values)
         for name in ("ein_v", "ein_2_v", "ein_3_v"):
             if name not in values:
                 continue
@@ -120,7 +122,7 @@ class Preamplifier(Stage):
         if np.any(np.asarray(values["gain_min_db"]) > np.asarray(values["gain_max_db"])):
             yield f"Lowest gain of {self.name} ({self.gain_min_db.text}) is above its highest ({self.gain_max_db.text})"
         gains = [gain for gain, _ in self._points(values, axis)]
-        if any(np.any(np.asarray(low) >= np.asarray(high)) for high, low in zip(gains[:-1], gains[1:], strict=True)):
+        if any(np.any(np.asarray(low) >= np.asarray(high)) for low, high in zip(gains[:-1], gains[1:], strict=True)):
             yield f"EIN of {self.name} goes from the highest gain down: the second and third gain must be lower each"
 
     def summary(self) -> str:

@@ -13,7 +13,7 @@ from engine.figures import Figure, format_db
 from engine.sections.base import Domain, Emission, Number
 from engine.sections.noise import ein_without_source, noise_total, white_total
 from engine.spectra import SPECTRA, band_shares
-from engine.units import SINE_CREST_DB, power_from_db
+from engine.units import SINE_CREST_DB, T_20C_K, power_from_db
 
 from .declare import Setting, option
 from .declared import Values
@@ -107,3 +107,8 @@ def marked_db(setting: Setting) -> str:
         return "off"
     sign = "+" if setting.value > 0.0 else ""
     return f"{sign}{format_db(setting.value)}"
+
+
+def at_room_temperature(values: Values) -> Values:
+    """Values that know a temperature: the project's, or 20 °C for a stage on its own."""
+    return values if "temperature_k" in values else values.replaced({"temperature_k": T_20C_K})
