@@ -203,7 +203,10 @@ def _impedances(answer: StageSections) -> object:
             for term in (two.a, two.b, two.c, two.d)
         ]
     impedances = [port.z_ohm for port in answer.inputs.values()] + [port.z_ohm for port in answer.outputs.values()]
-    return [np.asarray(z_ohm).tobytes() for z_ohm in impedances]
+    # A link that costs clip point carries the driver's along.
+    ends = {port.section for port in answer.outputs.values()}
+    clips = [section.clip_out for section in answer.sections if section.name in ends]
+    return [np.asarray(number).tobytes() for number in (*impedances, *clips)]
 
 
 def _nodes(
