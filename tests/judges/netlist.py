@@ -143,7 +143,9 @@ def enter(circuit: Circuit, stage: Stage, ports: Ports, z_ohm: float, port: str 
     return node
 
 
-def leave(circuit: Circuit, stage: Stage, node: str, z_ohm: float, port: str = "out", *, noisy: bool = False) -> None:
+def leave(
+    circuit: Circuit, stage: Stage, node: str, z_ohm: float, port: str = "out", *, noisy: bool = False
+) -> None:
     """An output behind its impedance."""
     circuit.resistor(node, circuit.node((stage["id"], "out", port)), max(z_ohm, 1e-6), noisy=noisy)
 
@@ -168,7 +170,9 @@ def plain_source(circuit: Circuit, stage: Stage, ports: Ports) -> None:
 @writes("plain_amplifier")
 def plain_amplifier(circuit: Circuit, stage: Stage, ports: Ports) -> None:
     node = enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))
-    node = circuit.amplify(circuit.hiss(node, amount(stage, "noise_v", "voltage")), times(setting(stage, "gain_db")))
+    node = circuit.amplify(
+        circuit.hiss(node, amount(stage, "noise_v", "voltage")), times(setting(stage, "gain_db"))
+    )
     leave(circuit, stage, node, amount(stage, "z_out_ohm", "impedance"))
 
 

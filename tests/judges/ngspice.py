@@ -28,11 +28,15 @@ def program() -> str:
     """Where ngspice is. Raises RuntimeError where it is not: the tests that ask for it cannot do without."""
     found = shutil.which("ngspice")
     if found is None:
-        raise RuntimeError("ngspice is not installed: install it (Debian: apt-get install ngspice); it judges the engine")
+        raise RuntimeError(
+            "ngspice is not installed: install it (Debian: apt-get install ngspice); it judges the engine"
+        )
     return found
 
 
-def measure(circuit: Circuit, folder: Path, frequencies_hz: Sequence[float], *, noise: bool = True) -> Measured:
+def measure(
+    circuit: Circuit, folder: Path, frequencies_hz: Sequence[float], *, noise: bool = True
+) -> Measured:
     """Levels at every place of a circuit, all its sources sounding with unlike programmes, and its noise."""
     names = sorted(set(circuit.nodes.values()))
     first = next(iter(circuit.sources))
@@ -66,18 +70,35 @@ def measure(circuit: Circuit, folder: Path, frequencies_hz: Sequence[float], *, 
             # Every vector is written as its scale, its real and its imaginary part.
             numbers = np.array(row, dtype=float).reshape(len(names), 3)
             squares += (numbers[:, 1] ** 2 + numbers[:, 2] ** 2) * volts**2
-        level.update({(hertz, name): float(np.sqrt(square)) for name, square in zip(names, squares, strict=True)})
+        level.update(
+            {(hertz, name): float(np.sqrt(square)) for name, square in zip(names, squares, strict=True)}
+        )
     totals = [float(line.split("=")[1]) for line in printed.splitlines() if "onoise_total =" in line]
     if noise and len(totals) != len(names):
-        raise RuntimeError(f"ngspice measured {len(totals)} noises of {len(names)}:\n{text}\n{printed}\n{done.stderr}")
+        raise RuntimeError(
+            f"ngspice measured {len(totals)} noises of {len(names)}:\n{text}\n{printed}\n{done.stderr}"
+        )
     noises = dict(zip(names, totals, strict=True)) if noise else {}
     return Measured(
-        {(hertz, place): level[hertz, name] for hertz in frequencies_hz for place, name in circuit.nodes.items()},
+        {
+            (hertz, place): level[hertz, name]
+            for hertz in frequencies_hz
+            for place, name in circuit.nodes.items()
+        },
         {place: noises[name] for place, name in circuit.nodes.items()} if noise else {},
     )
 
 
 def _netlist(circuit: Circuit, celsius: float, control: Sequence[str]) -> str:
     return "\n".join(
-        ["* a chain", *circuit.lines, f".options temp={celsius:.6g} noinit", ".control", *control, ".endc", ".end", ""]
+        [
+            "* a chain",
+            *circuit.lines,
+            f".options temp={celsius:.6g} noinit",
+            ".control",
+            *control,
+            ".endc",
+            ".end",
+            "",
+        ]
     )

@@ -97,7 +97,10 @@ class Draw:
 
     def _cable(self, name: str) -> Stage:
         return template(
-            "line_cable", name, column=self.column, length_m=Figure(text=f"{self.random.uniform(1.0, 300.0):.1f} m")
+            "line_cable",
+            name,
+            column=self.column,
+            length_m=Figure(text=f"{self.random.uniform(1.0, 300.0):.1f} m"),
         )
 
     def _amplify(self, fed_by: list[str]) -> None:

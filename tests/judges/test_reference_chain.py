@@ -46,7 +46,11 @@ def test_loaded_chain_in_ngspice(tmp_path):
 def test_loaded_chain_in_the_engine():
     """The same chain solved by the engine: levels to 1e-5, noise to 1e-4 (ngspice 39) [confirmed]."""
     outcome = evaluate(loaded_chain())
-    for place, volts in ((("first", "in"), INPUT_V), (("first", "out"), DRIVEN_V), (("second", "out"), OUTPUT_V)):
+    for place, volts in (
+        (("first", "in"), INPUT_V),
+        (("first", "out"), DRIVEN_V),
+        (("second", "out"), OUTPUT_V),
+    ):
         assert v_from_dbu(outcome.node(*place).level) == pytest.approx(volts, rel=1e-5)
     assert outcome.node("first", "out").level == pytest.approx(outcome.node("beside", "in").level, abs=1e-12)
     assert v_from_dbu(outcome.node("second", "out").noise) == pytest.approx(NOISE_V, rel=1e-4)
