@@ -61,6 +61,10 @@ class Header(Declared):
         "Temperature", "temperature", "20 °C", help="Sets thermal noise and air absorption."
     )
     humidity_percent: Figure = figure("Relative humidity", "percent", "50 %", help="Sets air absorption.")
+    air: Literal["counted", "left out"] = option(
+        "Air absorption", "counted", choices=("counted", "left out"),
+        help="Left out: inverse square alone, as in a sum done by hand.",
+    )  # fmt: skip
     tone_hz: Figure = figure(
         "Test tone",
         "frequency",

@@ -189,6 +189,7 @@ def fill_arrivals(
     air = {
         "temperature_k": project.header.temperature_k,
         "humidity_percent": parse(project.header.humidity_percent.text, "percent").amount,
+        "air_counts": float(project.header.air == "counted"),
     }
     for link in links:
         if link.id not in layout.arrival_rows:

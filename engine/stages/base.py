@@ -73,7 +73,7 @@ class Stage(Declared):
     def arrival(self, values: Values, link: Values, reference_m: Number | None, axis: Axis) -> Number:
         """Power gain of one acoustic link into this stage: inverse square from the stated distance to the link's own.
 
-        `link` holds the link's figures and the air's `temperature_k` and `humidity_percent`.
+        `link` holds the link's figures and the air's `temperature_k`, `humidity_percent` and whether it counts, `air_counts`.
         """
         if reference_m is None or "distance_m" not in link:
             return 1.0

@@ -66,7 +66,7 @@ class Seat(Stage):
         if reference_m is None or "distance_m" not in link:
             return 1.0
         distance = np.asarray(link["distance_m"])
-        air = absorption_db_per_m(axis.f_hz, link["temperature_k"], link["humidity_percent"])
+        air = absorption_db_per_m(axis.f_hz, link["temperature_k"], link["humidity_percent"]) * link.get("air_counts", 1.0)
         through_air = 10.0 ** (-air * np.maximum(distance - reference_m, 0.0) / 10.0)
         direct = direct_gain(distance, reference_m, link.get("off_axis_db", 0.0)) * through_air
         constant = self._room_constant(values)
