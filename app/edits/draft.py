@@ -104,7 +104,8 @@ class Draft:
         old: dict[str, Item] = {**self.project.stage, **self.project.link}
         new: dict[str, Item] = {**self.stages, **self.links}
         keys = dict.fromkeys([*old, *new])
-        return {key: (old.get(key), new.get(key)) for key in keys if old.get(key) is not new.get(key)}
+        pairs = {key: (old.get(key), new.get(key)) for key in keys}
+        return {key: (a, b) for key, (a, b) in pairs.items() if a is not b and a != b}
 
 
 def first_port(stage: Stage, *, is_output: bool, fits: Callable[[Port], bool] = lambda _port: True) -> Port:

@@ -1,0 +1,187 @@
+"""Where everything stands in the view, in px: blocks, ports, links; and what lies under a point. No Qt here."""
+
+from __future__ import annotations
+
+import itertools
+from collections.abc import Iterator, Mapping
+from functools import cached_property
+from typing import Protocol
+
+from app.gestures import Hit
+from app.gestures.base import Box, Place, Point
+from engine.project import Link, Project
+from engine.stages import Port, Stage
+
+from .routes import Route, port_share, routes
+from .rows import RowScale, row_scale
+
+
+class ColumnMap(Protocol):
+    """What the layout needs of the columns."""
+
+    @property
+    def pitch_px(self) -> float: ...
+
+    def x_in(self, column: float) -> float:
+        """A block's left edge."""
+
+    def x_out(self, column: float) -> float:
+        """A block's right edge."""
+
+
+class Layout:
+    """One project as it stands in the view: `columns` give x, rows and `top_px` (how far it is scrolled) give y."""
+
+    def __init__(self, project: Project, columns: ColumnMap, top_px: float = 0.0) -> None:
+        self.project = project
+        self.columns = columns
+        self.top_px = top_px
+
+    @property
+    def scale(self) -> RowScale:
+        """Heights of rows and blocks, by the present pitch."""
+        return row_scale(self.columns.pitch_px)
+
+    @cached_property
+    def routes(self) -> Mapping[str, Route]:
+        """The ways of the links."""
+        return routes(self.project)
+
+    @cached_property
+    def at(self) -> Mapping[Place, str]:
+        """Who stands where."""
+        return {(stage.column, stage.row): stage.id for stage in self.project.stages}
+
+    @property
+    def rows(self) -> int:
+        """How many rows are in use."""
+        return max((stage.row for stage in self.project.stages), default=-1) + 1
+
+    # -- where things stand ----------------------------------------------------------------------------------
+    def cell(self, column: int, row: int) -> Box:
+        """The block that stands, or would stand, on a place."""
+        scale = self.scale
+        left, right = self.columns.x_in(column), self.columns.x_out(column)
+        return left, scale.top(row) - self.top_px, right - left, scale.block_px
+
+    def box(self, key: str) -> Box:
+        """A stage's block."""
+        stage = self.project.stage[key]
+        return self.cell(stage.column, stage.row)
+
+    def port(self, key: str, name: str, *, is_output: bool) -> Point:
+        """Where a port sits on its block's edge."""
+        stage = self.project.stage[key]
+        left, top, width, height = self.cell(stage.column, stage.row)
+        share = port_share(stage.outputs() if is_output else stage.inputs(), name)
+        return left + width if is_output else left, top + height / 2.0 * (1.0 + share)
+
+    def ports(self, key: str) -> Iterator[tuple[Port, bool, Point]]:
+        """A stage's ports: the port, whether an output, where it sits."""
+        stage = self.project.stage[key]
+        for is_output, side in ((False, stage.inputs()), (True, stage.outputs())):
+            for port in side:
+                yield port, is_output, self.port(key, port.name, is_output=is_output)
+
+    def line(self, link: Link) -> tuple[Point, ...]:
+        """A link's corners from its output to its input."""
+        start = self.port(link.source, link.output, is_output=True)
+        end = self.port(link.target, link.input, is_output=False)
+        route = self.routes[link.id]
+        if route.first_gap is None:
+            return start, end
+        first = self._across(route.first_gap, route.first_lane.share)
+        if route.row_gap is None:
+            return start, (first, start[1]), (first, end[1]), end
+        scale = self.scale
+        under = scale.top(route.row_gap) + scale.block_px - self.top_px
+        level = under + (scale.row_px - scale.block_px) * route.row_lane.share
+        last = self._across(route.last_gap, route.last_lane.share)
+        return start, (first, start[1]), (first, level), (last, level), (last, end[1]), end
+
+    def _across(self, gap: int, share: float) -> float:
+        left, right = self.columns.x_out(gap), self.columns.x_in(gap + 1)
+        return left + (right - left) * share
+
+    # -- what lies where -------------------------------------------------------------------------------------
+    def place(self, x: float, y: float) -> Place:
+        """The grid place at a point: a column with half the gap on either side of its block."""
+        pitch = self.columns.pitch_px
+        origin = (self.columns.x_in(0) + self.columns.x_out(0)) / 2.0
+        return max(0, round((x - origin) / pitch)), self.scale.row_at(y + self.top_px)
+
+    def hit(self, x: float, y: float, *, reach: float = 6.0) -> Hit:
+        """What lies at a point: a port within reach, else a block, else a link within reach."""
+        column, row = self.place(x, y)
+        near = [self.at[place] for place in _around(column, row) if place in self.at]
+        if self.scale.detail != "bare":
+            port = self._port_near(near, x, y, reach)
+            if port is not None:
+                return port
+        for key in near:
+            left, top, width, height = self.box(key)
+            if left <= x <= left + width and top <= y <= top + height:
+                return Hit("stage", key, right=x >= left + width / 2.0)
+        return self._link_near(x, y, reach)
+
+    def _port_near(self, near: list[str], x: float, y: float, reach: float) -> Hit | None:
+        """The nearest port; on its own block it reaches less far, so that the block can be grabbed."""
+        best: tuple[float, Hit] | None = None
+        for key in near:
+            for port, is_output, (at_x, at_y) in self.ports(key):
+                inwards = (at_x - x) if is_output else (x - at_x)
+                if inwards > min(reach, self.columns.pitch_px / 10.0) or abs(at_y - y) > reach:
+                    continue
+                away = max(abs(at_x - x), abs(at_y - y))
+                if away <= reach and (best is None or away < best[0]):
+                    best = away, Hit("output" if is_output else "input", key, port.name, right=is_output)
+        return best[1] if best else None
+
+    def _link_near(self, x: float, y: float, reach: float) -> Hit:
+        best, found = reach, Hit()
+        for link in self.project.links:
+            corners = self.line(link)
+            if not _spans(corners, x, y, reach):
+                continue
+            for (ax, ay), (bx, by) in itertools.pairwise(corners):
+                away = max(min(ax, bx) - x, x - max(ax, bx), min(ay, by) - y, y - max(ay, by), 0.0)
+                if away < best:
+                    best, found = away, Hit("link", link.id)
+        return found
+
+    def inside(self, band: Box) -> frozenset[str]:
+        """The stages that a rectangle touches."""
+        left, top, width, height = band
+        caught: set[str] = set()
+        for stage in self.project.stages:
+            a, b, w, h = self.box(stage.id)
+            if a <= left + width and a + w >= left and b <= top + height and b + h >= top:
+                caught.add(stage.id)
+        return frozenset(caught)
+
+    # -- neighbours ------------------------------------------------------------------------------------------
+    def nearest(self, key: str, columns: int, rows: int) -> str | None:
+        """The nearest stage that way on the grid: along its row or column first, then aside."""
+        here = self.project.stage[key]
+        ranked = [
+            (aside * 1000 + along if columns else along * 1000 + aside, other.id)
+            for other in self.project.stages
+            if (along := _along(here, other, columns, rows)) > 0
+            for aside in (abs(other.row - here.row) if columns else abs(other.column - here.column),)
+        ]
+        return min(ranked)[1] if ranked else None
+
+
+def _along(here: Stage, other: Stage, columns: int, rows: int) -> int:
+    return (other.column - here.column) * columns + (other.row - here.row) * rows
+
+
+def _around(column: int, row: int) -> Iterator[Place]:
+    for by_row in (0, -1, 1):
+        for by_column in (0, -1, 1):
+            yield column + by_column, row + by_row
+
+
+def _spans(corners: tuple[Point, ...], x: float, y: float, reach: float) -> bool:
+    xs, ys = [corner[0] for corner in corners], [corner[1] for corner in corners]
+    return min(xs) - reach <= x <= max(xs) + reach and min(ys) - reach <= y <= max(ys) + reach
