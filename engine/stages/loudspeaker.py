@@ -42,7 +42,7 @@ class Loudspeaker(Stage):
         "Power compression", "level_db",
         help="What the hot voice coil loses at the programme's level: 1 to 3 dB near its continuous rating. Hiss is heard with a cool coil.",
     )  # fmt: skip
-    directivity_q: Figure = figure("Directivity factor Q", "q", "10", help="1 is all round, 10 a box with a horn, 50 a narrow array. Sets the room's share.")
+    directivity_q: Figure = figure("Directivity factor", "directivity", "Q 10", help="1 is all round, 10 a box with a horn, 50 a narrow array. Sets the room's share.")
     boxes: int = option("Boxes", 1, low=1, high=64, help="How many alike hang on this line, driven by one amplifier channel.")
     wiring: Literal["parallel", "series"] = option("Wiring", "parallel", choices=("parallel", "series"), help="How those boxes are wired.")
     adds: Literal["coherent", "power"] = option(

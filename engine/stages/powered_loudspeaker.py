@@ -41,7 +41,7 @@ class PoweredLoudspeaker(Stage):
     lower_by_db: tuple[Figure, ...] = figure(
         "Range switch drops", "loss", many=True, help="Less sensitive positions of an input range switch: how far each lies under the most sensitive."
     )
-    directivity_q: Figure = figure("Directivity factor Q", "q", "10", help="1 is all round, 10 a box with a horn.")
+    directivity_q: Figure = figure("Directivity factor", "directivity", "Q 10", help="1 is all round, 10 a box with a horn.")
     lowest_db: Figure = figure("Lowest level mark", "level_db", "-40 dB", help="The last mark before off.")
     input_range: Setting = control("Input range", "", help="The mic/line or sensitivity switch.", marking="switch")
     level_db: Setting = control("Level", "dB", "lowest_db", 0.0, 0.5, 0.0, off_at_low=True, marking="clock", help="The level control, ahead of the amplifier.")
