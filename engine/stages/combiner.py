@@ -29,7 +29,7 @@ class Combiner(Stage):
     leg_ohm: Figure = figure("Resistance per leg", "impedance", "1 k", help="In series with each source: 470 ohm to 10 kohm.")
     gain_db: Figure = figure("Gain", "gain", "0 dB", help="Of an active combiner, from each input.")
     max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="Of an active combiner, at its output.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-95 dBu", references=("nominal", "max"), help="Of an active combiner, at its output.")
+    noise: Figure | None = figure("S/N or noise", "noise", "-95 dBu unweighted", references=("nominal", "max"), help="Of an active combiner, at its output.")
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="Of each input of an active combiner.")
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="Of an active combiner.")
     build: Literal["resistive", "active"] = option("Build", "resistive", choices=("resistive", "active"), help="Resistive: no supply, with loss.")

@@ -28,7 +28,7 @@ class DynamicsProcessor(Stage):
 
     kind: Literal["dynamics"] = "dynamics"
     max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-90 dBu", references=("nominal", "max"), help="At its output, with unity gain and nothing compressed.")
+    noise: Figure | None = figure("S/N or noise", "noise", "-90 dBu unweighted", references=("nominal", "max"), help="At its output, with unity gain and nothing compressed.")
     nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to.")
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 50 kohm is usual.")
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 600 ohm is usual.")

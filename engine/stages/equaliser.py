@@ -39,7 +39,7 @@ class Equaliser(Parametric, Stage):
     )  # fmt: skip
     max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output.")
     noise: Figure | None = figure(
-        "S/N or noise", "noise", "-90 dBu", references=("nominal", "max"),
+        "S/N or noise", "noise", "-90 dBu unweighted", references=("nominal", "max"),
         help="With every gain flat. It stands ahead of the filters here: boost raises it.",
     )  # fmt: skip
     nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to.")

@@ -28,7 +28,7 @@ class Feed(Stage):
     kind: Literal["feed"] = "feed"
     nominal_v: Figure = figure("Nominal input", "voltage", "-10 dBV", help="Programme level it expects: −10 dBV or +4 dBu for line, −60 to −40 dBu for a microphone input.")
     max_input_v: Figure = figure("Maximum input", "voltage", "+6 dBV", help="The largest sine before it clips: 2 V for simple machines.")
-    ein_v: Figure | None = figure("Input noise", "ein", "-85 dBu @ 600 ohm", help="Equivalent input noise, or its noise floor as an input level.")
+    ein_v: Figure | None = figure("Input noise", "ein", "-85 dBu, 600 ohm, unweighted", help="Equivalent input noise, or its noise floor as an input level.")
     nominal_dbfs: Figure = figure("Nominal level, digital", "dbfs", "-20 dBFS", help="Programme level a digital feed expects.")
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 50 kohm for line inputs.")
     use: Literal["recorder", "stream", "camera", "hearing assistance", "press"] = option(

@@ -36,7 +36,7 @@ class MixBus(Stage):
         help="Of the summing amplifier, ahead of the bus fader, with as many channels routed as in the show.",
     )  # fmt: skip
     residual: Figure | None = figure(
-        "Residual noise", "noise", "-86 dBu", references=("nominal", "max"),
+        "Residual noise", "noise", "-86 dBu unweighted", references=("nominal", "max"),
         help="At the output with faders down: behind the bus fader, which does not lower it. −80 to −95 dBu.",
     )  # fmt: skip
     nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="Output level with the meter at 0: +4 dBu or 0 dBu.")

@@ -36,7 +36,7 @@ class MixerChannel(Stage):
     fader_max_db: Figure = figure("Highest fader mark", "level_db", "10 dB", help="Gain with the fader at its top: +10 dB is usual, some have 0, +6 or +12.")
     max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine inside the strip: +18 to +24 dBu.")
     noise: Figure | None = figure(
-        "Strip noise", "noise", "-95 dBu", references=("nominal", "max"),
+        "Strip noise", "noise", "-95 dBu unweighted", references=("nominal", "max"),
         help="Of the strip itself with trim and fader at 0 dB, ahead of the fader; −90 to −100 dBu.",
     )  # fmt: skip
     nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="Level inside the strip with the meter at 0.")

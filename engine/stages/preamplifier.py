@@ -36,17 +36,13 @@ class Preamplifier(Stage):
     gain_max_db: Figure = figure("Highest gain", "gain", "60 dB", help="With the pad out; 50 to 75 dB is usual.")
     gain_step_db: Figure = figure("Gain step", "level_db", "1 dB", help="What one click or panel mark changes: 0.1 to 6 dB.")
     pad_db: Figure | None = figure("Pad loss", "loss", "20 dB", help="Of the pad ahead of the gain. Leave it empty where there is none.")
-    ein_v: Figure = figure(
-        "EIN", "ein", "-127 dBu @ 150 ohm",
-        help="Equivalent input noise at the highest gain with its source resistance: −122 to −130 dBu with 150 ohm. Read with a short "
-        "circuit it looks better and is not comparable.",
+    ein_v: tuple[Figure, ...] = figure(
+        "EIN", "ein", "-127 dBu, 150 ohm, unweighted", many=True,
+        help="Equivalent input noise with its source resistance: −122 to −130 dBu with 150 ohm. Without a gain it is taken at the highest; "
+        "up to three may be given, such as −110 dBu, 150 ohm, unweighted @ 20 dB. With a short circuit it looks better and is not comparable.",
     )  # fmt: skip
-    ein_2_v: Figure | None = figure("EIN at a second gain", "ein", help="Where the sheet gives it, at a lower gain.")
-    ein_2_gain_db: Figure | None = figure("Second gain", "gain", help="The gain of the second EIN.")
-    ein_3_v: Figure | None = figure("EIN at a third gain", "ein", help="Where the sheet gives it, at a lower gain still.")
-    ein_3_gain_db: Figure | None = figure("Third gain", "gain", help="The gain of the third EIN.")
     residual: Figure | None = figure(
-        "Output noise at lowest gain", "noise", "-95 dBu",
+        "Output noise at lowest gain", "noise", "-95 dBu unweighted",
         help="Residual noise at the output with the gain at its lowest: −85 to −100 dBu. Without it EIN alone would flatter low gains.",
     )  # fmt: skip
     max_input_v: Figure = figure(
@@ -57,7 +53,7 @@ class Preamplifier(Stage):
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 200 ohm is usual.")
     form: Form = form_option()
     pad: Setting = switch("Pad", help="Whether the pad is in. It moves the input's clip point up by its loss.")
-    gain_db: Setting = control("Gain", "dB", "gain_min_db", "gain_max_db", "gain_step_db", 40.0, help="The gain control, pad not counted.", marking="clock")
+    gain_db: Setting = control("Gain", "dB", "gain_min_db", "gain_max_db", "gain_step_db", 50.0, help="The gain control, pad not counted.", marking="clock")
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", Domain.ANALOGUE),)
@@ -68,7 +64,7 @@ class Preamplifier(Stage):
     def sections(self, values: Values, axis: Axis) -> StageSections:
         gain = power_from_db(values["gain_db"])
         padded = np.where(is_on(values["pad"]), power_from_db(values.get("pad_db", 0.0)), 1.0)
-        source_ohm = values.get("ein_v.source_ohm", USUAL_SOURCE_OHM)
+        source_ohm = values.get("ein_v.0.source_ohm", USUAL_SOURCE_OHM)
         own = self._input_noise(values, axis)
         # The pad's resistances stand where the source did when EIN was measured, so with it in EIN still holds.
         pad_noise = thermal(axis, source_ohm, values["temperature_k"]) * (1.0 - 1.0 / padded)
@@ -88,12 +84,11 @@ class Preamplifier(Stage):
         )  # fmt: skip
 
     def _points(self, values: Values, axis: Axis) -> list[tuple[Number, Number]]:
-        """EIN points from the lowest gain up."""
-        points = [(values["gain_max_db"], stated_ein(axis, values, "ein_v"))]
-        for name in ("ein_2", "ein_3"):
-            if f"{name}_v" in values and f"{name}_gain_db" in values:
-                points.append((values[f"{name}_gain_db"], stated_ein(axis, values, f"{name}_v")))
-        return points[::-1]
+        """EIN points (gain, noise) from the lowest gain up; noiseless where none is given."""
+        names = [f"ein_v.{n}" for n in range(len(self.ein_v))]
+        points = [(values.get(f"{name}.gain_db", values["gain_max_db"]), stated_ein(axis, values, name)) for name in names]
+        points.sort(key=lambda point: float(np.mean(np.asarray(point[0]))))
+        return points or [(values["gain_max_db"], np.zeros(axis.size))]
 
     def _input_noise(self, values: Values, axis: Axis) -> Number:
         return noise_over_gain(values["gain_db"], self._points(values, axis))
@@ -102,28 +97,24 @@ class Preamplifier(Stage):
         """What the residual at lowest gain holds beyond the input's own noise times that gain."""
         residual = stated_noise(axis, values, "residual", {"max": np.asarray(values["max_output_v"]) ** 2})
         ein = noise_over_gain(values["gain_min_db"], self._points(values, axis))
-        source = thermal(axis, values.get("ein_v.source_ohm", USUAL_SOURCE_OHM), values["temperature_k"])
+        source = thermal(axis, values.get("ein_v.0.source_ohm", USUAL_SOURCE_OHM), values["temperature_k"])
         return np.maximum(residual - (ein + source) * power_from_db(values["gain_min_db"]), 0.0)
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         values = at_room_temperature(values)
-        for name in ("ein_v", "ein_2_v", "ein_3_v"):
-            if name not in values:
-                continue
+        for place, typed in enumerate(self.ein_v):
+            name = f"ein_v.{place}"
             source_ohm = values.get(f"{name}.source_ohm", 0.0)
             total = white_total(axis, np.asarray(values[name]) ** 2, values.tag(f"{name}.weighting"))
             least = thermal(axis, source_ohm, values["temperature_k"])
             if np.any(total[..., 0] < least[..., 0]):
                 below = float(dbu_from_v2(np.max(least @ axis.flat_weight)))
                 yield (
-                    f"EIN of {self.name} is {getattr(self, name).text}: {float(np.max(source_ohm)):g} ohm alone make "
+                    f"EIN of {self.name} is {typed.text}: {float(np.max(source_ohm)):g} ohm alone make "
                     f"{below:.1f} dBu of thermal noise, and no amplifier is quieter than its source"
                 )
         if np.any(np.asarray(values["gain_min_db"]) > np.asarray(values["gain_max_db"])):
             yield f"Lowest gain of {self.name} ({self.gain_min_db.text}) is above its highest ({self.gain_max_db.text})"
-        gains = [gain for gain, _ in self._points(values, axis)]
-        if any(np.any(np.asarray(low) >= np.asarray(high)) for low, high in zip(gains[:-1], gains[1:], strict=True)):
-            yield f"EIN of {self.name} goes from the highest gain down: the second and third gain must be lower each"
 
     def summary(self) -> str:
         return marked_db(self.gain_db) + (", pad in" if self.pad.value else "")

@@ -8,7 +8,7 @@ from typing import Any, Literal
 import numpy as np
 from numpy.typing import NDArray
 
-from engine.bands import Axis
+from engine.bands import WEIGHTINGS, Axis
 from engine.figures import Figure, format_db
 from engine.sections.base import Domain, Emission, Number
 from engine.sections.noise import ein_without_source, noise_total, white_total
@@ -59,10 +59,17 @@ def spectrum_option(default: Spectrum = "pink") -> Any:
 
 
 def emission(
-    axis: Axis, spectrum: Spectrum, power: Number, crest_db: Number, own_levels_db: Sequence[Number] = ()
-) -> Emission:
-    """What a source of total `power` sends out. A test tone is a sine: its sine-scaled peak is its level."""
+    axis: Axis, spectrum: Spectrum, power: Number, crest_db: Number, own_levels_db: Sequence[Number] = (),
+    weighting: str | None = None,
+) -> Emission:  # fmt: skip
+    """What a source of total `power` sends out. A test tone is a sine: its sine-scaled peak is its level.
+
+    With `weighting` "A" or "C" the `power` was read through that weighting.
+    """
     shares = band_shares(spectrum, axis.tone_hz, own_levels_db)
+    if weighting in WEIGHTINGS:
+        heard = axis.spread(shares)[..., :-1] * power_from_db(WEIGHTINGS[weighting](axis.f_hz[:-1]))
+        power = power / (heard @ axis.flat_weight[:-1])[..., None]
     crest = SINE_CREST_DB if spectrum == "test tone" else np.asarray(crest_db, dtype=float)
     return Emission(axis.spread(shares) * power, power_from_db(crest - SINE_CREST_DB))
 
@@ -81,8 +88,9 @@ def stated_noise(
     """The white spectrum of a noise figure, a level or a ratio re one of `reference_v2`; `otherwise` where none is given."""
     if name not in values:
         return otherwise
+    stated = f"{name}.reference_v"
     total = noise_total(
-        values[name], values.tag(f"{name}.reference"), reference_v2, stated_v=values.get(f"{name}.reference_v", np.nan)
+        values[name], values.tag(f"{name}.reference"), reference_v2, stated_v=values[stated] if stated in values else None
     )
     return white_total(axis, total, values.tag(f"{name}.weighting"))
 

@@ -32,7 +32,7 @@ class Splitter(Stage):
     loss_db: Figure = figure("Transformer loss", "loss", "0 dB", help="Of each isolated output into an open circuit: 20 log of its ratio; 0 dB for 1:1.")
     gain_db: Figure = figure("Gain", "gain", "0 dB", help="Of each output of an active splitter.")
     max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="Of an active splitter, at its input and outputs.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-100 dBu", references=("nominal", "max"), help="Of an active splitter, at each output.")
+    noise: Figure | None = figure("S/N or noise", "noise", "-100 dBu unweighted", references=("nominal", "max"), help="Of an active splitter, at each output.")
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="Of an active splitter.")
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="Of each output of an active splitter.")
     build: Literal["parallel", "resistive", "transformer", "active"] = option(
