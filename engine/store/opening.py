@@ -175,9 +175,10 @@ def _item(raw: Mapping[str, Any], path: Path, item: object, kind: type[T], notes
     except ValidationError as reason:
         where, what = _first(reason)
         spot = place(raw, (*path, *where))
-        name = item.get("name")
-        if not where and isinstance(name, str):
-            raise StoreError(f"{spot}, {_without_name(what, name)}") from None
+        if not where:
+            # The place names it already: "Rated power of Amplifier A: …" becomes "Rated power: …".
+            what = what.replace(f" of {_called(kind, item)}", "", 1)
+            raise StoreError(f"{spot}, {what}") from None
         raise StoreError(f"{spot}: {what}") from None
     notes.extend(_unknown(place(raw, (*path, *where)), key) for where, key in _extras(made))
     return made
@@ -193,9 +194,8 @@ def _first(reason: ValidationError) -> tuple[Path, str]:
     return tuple(found["loc"]), words[:1].lower() + words[1:] if found["loc"] else words
 
 
-def _without_name(words: str, name: str) -> str:
-    """The stage is named already: "Rated power of Amplifier A: …" becomes "Rated power: …"."""
-    return words.replace(f" of {name}", "", 1) if name else words
+def _called(kind: type[Declared], item: Mapping[str, Any]) -> str:
+    return kind.model_construct(**{name: item.get(name) for name in kind.model_fields}).called
 
 
 def _extras(model: BaseModel, path: Path = ()) -> Iterator[tuple[Path, str]]:
