@@ -25,7 +25,7 @@ def chain() -> Project:
         stages=(
             template("sound_source", "talker", "Talker", column=0),
             template("microphone", "mic", "Lectern mic", column=1),
-            template("preamplifier", "pre", "Preamp 3", column=2),
+            template("preamplifier", "pre", "Preamp 3", column=2, gain_db={"value": 40.0}),
         ),
         links=(
             Link(id="l1", source="talker", target="mic"),

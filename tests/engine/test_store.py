@@ -31,7 +31,7 @@ def small() -> Project:
         header=Header(name="Hall of nowhere"),
         stages=(
             template("microphone", "mic", "Lectern mic", column=0),
-            template("preamplifier", "pre", "Preamp 3", column=1),
+            template("preamplifier", "pre", "Preamp 3", column=1, gain_db={"value": 40.0}),
             template("power_amplifier", "amp-a", "Amplifier A", column=2, row=1),
         ),
         links=(Link(id="l1", source="mic", target="pre"),),
