@@ -24,7 +24,9 @@ def absorption_db_per_m(
     saturation = 10.0 ** (-6.8346 * (TRIPLE_POINT_K / temperature) ** 1.261 + 4.6151)
     h = np.asarray(humidity_percent) * saturation / pressure  # molar concentration of water vapour [%]
     oxygen_hz = pressure * (24.0 + 4.04e4 * h * (0.02 + h) / (0.391 + h))
-    nitrogen_hz = pressure * relative**-0.5 * (9.0 + 280.0 * h * np.exp(-4.170 * (relative ** (-1.0 / 3.0) - 1.0)))
+    nitrogen_hz = (
+        pressure * relative**-0.5 * (9.0 + 280.0 * h * np.exp(-4.170 * (relative ** (-1.0 / 3.0) - 1.0)))
+    )
     f2 = f_hz**2
     classical = 1.84e-11 / pressure * relative**0.5
     oxygen = 0.01275 * np.exp(-2239.1 / temperature) / (oxygen_hz + f2 / oxygen_hz)

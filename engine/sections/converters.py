@@ -29,7 +29,9 @@ def word_noise(axis: Axis, bits: Number, *, dithered: bool) -> Array:
     return white_total(axis, total * (DITHERED if dithered else 1.0), "flat")
 
 
-def analogue_to_digital(name: str, full_scale_v: Number, noise: Number, *, after: tuple[str, ...] = ()) -> Active:
+def analogue_to_digital(
+    name: str, full_scale_v: Number, noise: Number, *, after: tuple[str, ...] = ()
+) -> Active:
     """The section of an A/D converter: volts in, full scale out; it clips at 0 dBFS."""
     full2 = np.asarray(full_scale_v, dtype=float) ** 2
     return Active(

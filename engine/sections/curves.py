@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -17,7 +18,7 @@ def straight(x: ArrayLike, points: Sequence[tuple[ArrayLike, ArrayLike]]) -> Arr
     """Straight lines between points (x, y) of ascending x; beyond the ends the end values stay."""
     at = np.asarray(x, dtype=float)
     found = np.asarray(points[0][1], dtype=float)
-    for (left, below), (right, above) in zip(points[:-1], points[1:], strict=True):
+    for (left, below), (right, above) in pairwise(points):
         span = np.maximum(np.asarray(right) - np.asarray(left), 1e-12)
         share = np.clip((at - np.asarray(left)) / span, 0.0, 1.0)
         mixed = np.asarray(below) * (1.0 - share) + np.asarray(above) * share

@@ -67,13 +67,21 @@ def low_pass(f_hz: Array, corner_hz: Number, slope: str) -> Array:
     """A low-pass by the name of its slope. Linkwitz–Riley of order 2n is Butterworth of order n, twice: −6.02 dB at the corner
     (Linkwitz 1976)."""
     squared, order = SLOPES[slope]
-    return butterworth_low_pass(f_hz, corner_hz, order // 2) ** 2 if squared else butterworth_low_pass(f_hz, corner_hz, order)
+    return (
+        butterworth_low_pass(f_hz, corner_hz, order // 2) ** 2
+        if squared
+        else butterworth_low_pass(f_hz, corner_hz, order)
+    )
 
 
 def high_pass(f_hz: Array, corner_hz: Number, slope: str) -> Array:
     """A high-pass by the name of its slope, as `low_pass`."""
     squared, order = SLOPES[slope]
-    return butterworth_high_pass(f_hz, corner_hz, order // 2) ** 2 if squared else butterworth_high_pass(f_hz, corner_hz, order)
+    return (
+        butterworth_high_pass(f_hz, corner_hz, order // 2) ** 2
+        if squared
+        else butterworth_high_pass(f_hz, corner_hz, order)
+    )
 
 
 def _squares(f_hz: Array, corner_hz: Number) -> tuple[Array, Array]:

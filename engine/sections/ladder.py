@@ -22,7 +22,9 @@ class Ladder:
     @classmethod
     def at_end(cls, cable_ohm: Number, loads_s: Sequence[Number]) -> Ladder:
         """All loads [S] behind the whole cable [ohm]."""
-        total = np.maximum(np.sum(np.broadcast_arrays(*(np.asarray(load) for load in loads_s)), axis=0), _LEAST_S)
+        total = np.maximum(
+            np.sum(np.broadcast_arrays(*(np.asarray(load) for load in loads_s)), axis=0), _LEAST_S
+        )
         share = 1.0 / (1.0 + cable_ohm * total)
         return cls(cable_ohm + 1.0 / total, (share,) * len(loads_s))
 

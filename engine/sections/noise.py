@@ -48,7 +48,11 @@ def ein_without_source(
 
 
 def noise_total(
-    amount: Number, reference: str | None, reference_v2: Mapping[str, Number], *, stated_v: Number | None = None
+    amount: Number,
+    reference: str | None,
+    reference_v2: Mapping[str, Number],
+    *,
+    stated_v: Number | None = None,
 ) -> Array:
     """Total noise power of a figure: a level in volts as it stands, or a ratio in dB under what it refers to.
 
@@ -63,5 +67,7 @@ def noise_total(
         base = np.asarray(stated_v) ** 2
     else:
         have = ", ".join(reference_v2)
-        raise ValueError(f"noise refers to {reference!r}, which this stage does not state: refer it to {have}, or give a level")
+        raise ValueError(
+            f"noise refers to {reference!r}, which this stage does not state: refer it to {have}, or give a level"
+        )
     return np.asarray(base * power_from_db(-np.asarray(amount)))

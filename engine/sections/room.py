@@ -26,7 +26,9 @@ def direct_gain(distance_m: Number, reference_m: Number, off_axis_db: Number = 0
 
 def reverberant_gain(room_constant_m2: Number, directivity_q: Number, reference_m: Number) -> Array:
     """Power gain from the level at `reference_m` on axis to the room's diffuse field."""
-    return np.asarray(16.0 * np.pi * np.asarray(reference_m) ** 2 / (np.asarray(directivity_q) * room_constant_m2))
+    return np.asarray(
+        16.0 * np.pi * np.asarray(reference_m) ** 2 / (np.asarray(directivity_q) * room_constant_m2)
+    )
 
 
 def critical_distance_m(room_constant_m2: Number, directivity_q: Number) -> Array:

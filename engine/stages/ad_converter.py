@@ -20,14 +20,18 @@ class AdConverter(Stage):
     title: ClassVar[str] = "A/D converter"
     family: ClassVar[str] = "Digital"
     order: ClassVar[int] = 10
-    help: ClassVar[str] = "An input card or stage-box input behind its preamplifier: the level at 0 dBFS and its dynamic range."
+    help: ClassVar[str] = (
+        "An input card or stage-box input behind its preamplifier: the level at 0 dBFS and its dynamic range."
+    )
 
     kind: Literal["ad_converter"] = "ad_converter"
     full_scale_v: Figure = figure(
         "Full scale", "full_scale", "+24 dBu",
         help="Input level of the sine that reaches 0 dBFS: +18 to +24 dBu. EBU R 68 has +18, SMPTE RP 155 +24.",
     )  # fmt: skip
-    range_db: Figure = figure("Dynamic range", "dynamic_range", "112 dB(A)", help="105 to 120 dB; sheets usually weight it with A.")
+    range_db: Figure = figure(
+        "Dynamic range", "dynamic_range", "112 dB(A)", help="105 to 120 dB; sheets usually weight it with A."
+    )
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 30 kohm is usual.")
 
     def inputs(self) -> tuple[Port, ...]:

@@ -8,7 +8,17 @@ import numpy as np
 
 from engine.bands import Axis
 from engine.figures import Figure
-from engine.sections.base import Active, ActiveStage, Domain, Input, Output, PassiveStage, StageSections, TwoPort, series
+from engine.sections.base import (
+    Active,
+    ActiveStage,
+    Domain,
+    Input,
+    Output,
+    PassiveStage,
+    StageSections,
+    TwoPort,
+    series,
+)
 from engine.units import power_from_db
 
 from .base import Port, Stage
@@ -26,13 +36,27 @@ class Combiner(Stage):
     help: ClassVar[str] = "Sums several lines. A passive one with two equal legs loses about 6 dB."
 
     kind: Literal["combiner"] = "combiner"
-    leg_ohm: Figure = figure("Resistance per leg", "impedance", "1 k", help="In series with each source: 470 ohm to 10 kohm.")
+    leg_ohm: Figure = figure(
+        "Resistance per leg", "impedance", "1 k", help="In series with each source: 470 ohm to 10 kohm."
+    )
     gain_db: Figure = figure("Gain", "gain", "0 dB", help="Of an active combiner, from each input.")
-    max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="Of an active combiner, at its output.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-95 dBu unweighted", references=("nominal", "max"), help="Of an active combiner, at its output.")
-    z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="Of each input of an active combiner.")
+    max_v: Figure = figure(
+        "Maximum level", "voltage", "+22 dBu", help="Of an active combiner, at its output."
+    )
+    noise: Figure | None = figure(
+        "S/N or noise",
+        "noise",
+        "-95 dBu unweighted",
+        references=("nominal", "max"),
+        help="Of an active combiner, at its output.",
+    )
+    z_in_ohm: Figure = figure(
+        "Input impedance", "impedance", "20 k", help="Of each input of an active combiner."
+    )
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="Of an active combiner.")
-    build: Literal["resistive", "active"] = option("Build", "resistive", choices=("resistive", "active"), help="Resistive: no supply, with loss.")
+    build: Literal["resistive", "active"] = option(
+        "Build", "resistive", choices=("resistive", "active"), help="Resistive: no supply, with loss."
+    )
     form: Form = form_option()
 
     def in_use(self, name: str) -> bool:
@@ -53,7 +77,9 @@ class Combiner(Stage):
         noise = stated_noise(axis, values, "noise", {"nominal": max2, "max": max2})
         total = Active("sum", gain=power_from_db(values["gain_db"]), clip_out=max2, noise_behind=noise)
         return ActiveStage(
-            (total,), {"in": Input("sum", values["z_in_ohm"])}, {"out": Output("sum", values["z_out_ohm"], self.form)}
+            (total,),
+            {"in": Input("sum", values["z_in_ohm"])},
+            {"out": Output("sum", values["z_out_ohm"], self.form)},
         )
 
     def summary(self) -> str:

@@ -26,18 +26,25 @@ MOST_GROUPS = 8
 
 def _group_fields(n: int) -> dict[str, Any]:
     """What one group of loudspeakers alike needs."""
+    many = "How many hang on the line with this tap. They load it whether drawn or not."
+    chosen_tap = "The tap chosen on every transformer of this group."
     return {
-        f"count_{n}": (Figure, figure(f"Group {n} loudspeakers", "count", "10", help="How many hang on the line with this tap. They load it whether drawn or not.")),
-        f"tap_{n}": (Setting, control(f"Group {n} tap", "", 0.0, 0.0, 1.0, 1.0, marking="switch", help="The tap chosen on every transformer of this group.")),
-    }  # fmt: skip
+        f"count_{n}": (Figure, figure(f"Group {n} loudspeakers", "count", "10", help=many)),
+        f"tap_{n}": (
+            Setting,
+            control(f"Group {n} tap", "", 0.0, 0.0, 1.0, 1.0, marking="switch", help=chosen_tap),
+        ),
+    }
 
 
 _Groups: type[Declared] = create_model(
-    "_Groups", __base__=Declared, **{k: v for n in range(1, MOST_GROUPS + 1) for k, v in _group_fields(n).items()}
+    "_Groups",
+    __base__=Declared,
+    **{k: v for n in range(1, MOST_GROUPS + 1) for k, v in _group_fields(n).items()},
 )
 
 
-class ConstantVoltageLine(_Groups, Stage):  # type: ignore[valid-type, misc]
+class ConstantVoltageLine(_Groups, Stage):
     """From the amplifier's terminals to the voice coils of each group.
 
     A tap of P watts marked for V volts is a load of V²/P, and lets V_line sqrt(P Z) / V reach a voice coil of Z, less the
@@ -47,28 +54,63 @@ class ConstantVoltageLine(_Groups, Stage):  # type: ignore[valid-type, misc]
     title: ClassVar[str] = "Constant-voltage line"
     family: ClassVar[str] = "Outputs"
     order: ClassVar[int] = 20
-    help: ClassVar[str] = "Tapped loudspeakers on a 70.7 or 100 V line: the load, each group's power, the loss in cable and transformer."
+    help: ClassVar[str] = (
+        "Tapped loudspeakers on a 70.7 or 100 V line: the load, each group's power, the loss in cable and transformer."
+    )
 
     kind: Literal["constant_voltage_line"] = "constant_voltage_line"
-    line_voltage_v: Figure = figure("Line voltage", "line_voltage", "70.7 V", help="What the amplifier's output is rated at: 70.7 or 100 V, seldom 25 or 50.")
-    marked_voltage_v: Figure | None = figure(
-        "Taps are marked for", "line_voltage", help="Where it is not the line's voltage: a 100 V tap on a 70.7 V line takes half its watts."
+    line_voltage_v: Figure = figure(
+        "Line voltage",
+        "line_voltage",
+        "70.7 V",
+        help="What the amplifier's output is rated at: 70.7 or 100 V, seldom 25 or 50.",
     )
-    taps_w: tuple[Figure, ...] = figure("Taps", "tap", "20 W; 10 W; 5 W; 2.5 W", many=True, help="What the transformers offer, the largest first.")
-    speaker_ohm: Figure = figure("Voice coil", "impedance", "8 ohm", help="Impedance of the loudspeaker behind each transformer.")
+    marked_voltage_v: Figure | None = figure(
+        "Taps are marked for",
+        "line_voltage",
+        help="Where it is not the line's voltage: a 100 V tap on a 70.7 V line takes half its watts.",
+    )
+    taps_w: tuple[Figure, ...] = figure(
+        "Taps",
+        "tap",
+        "20 W; 10 W; 5 W; 2.5 W",
+        many=True,
+        help="What the transformers offer, the largest first.",
+    )
+    speaker_ohm: Figure = figure(
+        "Voice coil", "impedance", "8 ohm", help="Impedance of the loudspeaker behind each transformer."
+    )
     loss_db: Figure = figure("Transformer loss", "loss", "1 dB", help="Insertion loss: 0.5 to 2 dB.")
     length_m: Figure = figure("Line length", "length", "50 m", help="One way to the far end.")
     area_mm2: Figure = figure("Cross-section", "area", "1.5 mm²", help="Of one conductor, in mm² or AWG.")
-    high_pass_hz: Figure | None = figure("High-pass", "frequency", help="Ahead of the transformers, 12 dB per octave: 50 to 120 Hz keeps them out of saturation.")
-    saturation_v: Figure | None = figure(
-        "Saturation", "voltage_at_frequency", help="Largest line voltage the transformers take and its frequency, such as 70.7 V @ 50 Hz; it falls 6 dB per octave below."
+    high_pass_hz: Figure | None = figure(
+        "High-pass",
+        "frequency",
+        help="Ahead of the transformers, 12 dB per octave: 50 to 120 Hz keeps them out of saturation.",
     )
-    groups: int = option("Groups", 1, low=1, high=MOST_GROUPS, help="Sets of loudspeakers with a tap of their own; each has an output.")
+    saturation_v: Figure | None = figure(
+        "Saturation",
+        "voltage_at_frequency",
+        help="Largest line voltage the transformers take and its frequency, such as 70.7 V @ 50 Hz; it falls 6 dB per octave below.",
+    )
+    groups: int = option(
+        "Groups",
+        1,
+        low=1,
+        high=MOST_GROUPS,
+        help="Sets of loudspeakers with a tap of their own; each has an output.",
+    )
     layout: Literal["at the far end", "along the line"] = option(
-        "Loads stand", "at the far end", choices=("at the far end", "along the line"), help="All behind the whole cable, or group after group at equal spacing."
+        "Loads stand",
+        "at the far end",
+        choices=("at the far end", "along the line"),
+        help="All behind the whole cable, or group after group at equal spacing.",
     )
     copper: Literal["0.0172 ohm mm²/m", "IEC 60228 class 1/2", "IEC 60228 class 5/6"] = option(
-        "Copper", "0.0172 ohm mm²/m", choices=COPPERS, help="Handbook copper at 20 °C, or the largest resistance IEC 60228 allows."
+        "Copper",
+        "0.0172 ohm mm²/m",
+        choices=COPPERS,
+        help="Handbook copper at 20 °C, or the largest resistance IEC 60228 allows.",
     )
 
     @classmethod
@@ -87,7 +129,10 @@ class ConstantVoltageLine(_Groups, Stage):  # type: ignore[valid-type, misc]
         return (Port("in", Domain.ANALOGUE),)
 
     def outputs(self) -> tuple[Port, ...]:
-        return tuple(Port(f"out_{n}" if n > 1 else "out", Domain.ANALOGUE, f"group {n}") for n in range(1, self.groups + 1))
+        return tuple(
+            Port(f"out_{n}" if n > 1 else "out", Domain.ANALOGUE, f"group {n}")
+            for n in range(1, self.groups + 1)
+        )
 
     # -- what a person asks of a line ----------------------------------------------------------------------------
     def tap_w(self, values: Values, group: int) -> Number:
@@ -131,9 +176,15 @@ class ConstantVoltageLine(_Groups, Stage):  # type: ignore[valid-type, misc]
             rated_hz = np.asarray(values.get("saturation_v.frequency_hz", 50.0))
             flux = np.maximum(1.0, (rated_hz / axis.f_hz) ** 2)
         line = Active("line", gain=cut, clip_out=clip, clip_weight=flux)
-        coil2 = values["speaker_ohm"] / np.asarray(self.marked_v(values)) ** 2 * power_from_db(-np.asarray(values["loss_db"]))
+        coil2 = (
+            values["speaker_ohm"]
+            / np.asarray(self.marked_v(values)) ** 2
+            * power_from_db(-np.asarray(values["loss_db"]))
+        )
         groups, outputs = [], {}
-        for port, share, n in zip(self.outputs(), ladder.voltage_shares, range(1, self.groups + 1), strict=True):
+        for port, share, n in zip(
+            self.outputs(), ladder.voltage_shares, range(1, self.groups + 1), strict=True
+        ):
             groups.append(Active(port.label, gain=share**2 * self.tap_w(values, n) * coil2, after=("line",)))
             outputs[port.name] = Output(port.label, 0.0, "transformer")
         return ActiveStage((line, *groups), {"in": Input("line", ladder.input_ohm)}, outputs)

@@ -29,17 +29,33 @@ class DaConverter(Stage):
     help: ClassVar[str] = "An output card: the level at 0 dBFS, its dynamic range, its output impedance."
 
     kind: Literal["da_converter"] = "da_converter"
-    full_scale_v: Figure = figure("Full scale", "full_scale", "+24 dBu", help="Output level of a sine at 0 dBFS: +18 to +24 dBu.")
-    range_db: Figure = figure("Dynamic range", "dynamic_range", "112 dB(A)", help="105 to 120 dB; sheets usually weight it with A.")
+    full_scale_v: Figure = figure(
+        "Full scale", "full_scale", "+24 dBu", help="Output level of a sine at 0 dBFS: +18 to +24 dBu."
+    )
+    range_db: Figure = figure(
+        "Dynamic range", "dynamic_range", "112 dB(A)", help="105 to 120 dB; sheets usually weight it with A."
+    )
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 200 ohm is usual.")
     lower_by_db: tuple[Figure, ...] = figure(
-        "Range switch drops", "loss", many=True, help="Where it has an analogue output range switch: how far each other position lies under full."
+        "Range switch drops",
+        "loss",
+        many=True,
+        help="Where it has an analogue output range switch: how far each other position lies under full.",
     )
     form: Form = form_option()
-    output_range: Setting = control("Output range", "", help="Analogue: it lowers level, clip point and the converter's noise together.", marking="switch")
+    output_range: Setting = control(
+        "Output range",
+        "",
+        help="Analogue: it lowers level, clip point and the converter's noise together.",
+        marking="switch",
+    )
 
     def control_choices(self, name: str) -> tuple[tuple[str, float], ...]:
-        return drop_choices("full", self.lower_by_db) if name == "output_range" else super().control_choices(name)
+        return (
+            drop_choices("full", self.lower_by_db)
+            if name == "output_range"
+            else super().control_choices(name)
+        )
 
     def in_use(self, name: str) -> bool:
         return name != "output_range" or bool(self.lower_by_db)

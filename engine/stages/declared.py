@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field, replace
 from functools import cache
-from typing import Any, Literal, Self, get_args
+from typing import Any, Literal, Self, TypeVar, get_args
 
 from pydantic import BaseModel, ConfigDict, model_validator
 
@@ -15,6 +15,7 @@ from engine.sections.base import Number
 from .assumed import alternatives
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
 
+Otherwise = TypeVar("Otherwise", float, None, Number)
 Side = Literal["low", "mid", "high"]
 
 
@@ -36,7 +37,7 @@ class Values:
     def __contains__(self, name: str) -> bool:
         return name in self.numbers
 
-    def get(self, name: str, default: Number) -> Number:
+    def get(self, name: str, default: Otherwise) -> Number | Otherwise:
         return self.numbers.get(name, default)
 
     def tag(self, name: str) -> str | None:

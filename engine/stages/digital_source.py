@@ -29,12 +29,23 @@ class DigitalSource(Stage):
 
     kind: Literal["digital_source"] = "digital_source"
     level_dbfs: Figure = figure(
-        "Programme level", "dbfs", "-20 dBFS", help="Average of the programme, rms against a full-scale sine: −24 to −14 dBFS is usual."
+        "Programme level",
+        "dbfs",
+        "-20 dBFS",
+        help="Average of the programme, rms against a full-scale sine: −24 to −14 dBFS is usual.",
     )
-    crest_db: Figure = figure("Crest factor", "crest_factor", "15 dB", help="Waveform peak over rms: 8 to 15 dB mastered, 15 to 20 live.")
+    crest_db: Figure = figure(
+        "Crest factor",
+        "crest_factor",
+        "15 dB",
+        help="Waveform peak over rms: 8 to 15 dB mastered, 15 to 20 live.",
+    )
     spectrum: Spectrum = spectrum_option("pink")
     own_bands_db: tuple[Figure, ...] = figure(
-        "Own bands", "level_db", many=True, help="31 third-octave levels from 20 Hz, 10 octave levels from 31.5 Hz or 8 from 63 Hz."
+        "Own bands",
+        "level_db",
+        many=True,
+        help="31 third-octave levels from 20 Hz, 10 octave levels from 31.5 Hz or 8 from 63 Hz.",
     )
 
     def outputs(self) -> tuple[Port, ...]:

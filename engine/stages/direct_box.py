@@ -33,20 +33,38 @@ class DirectBox(Stage):
 
     kind: Literal["direct_box"] = "direct_box"
     loss_db: Figure = figure(
-        "Loss", "loss", "21.6 dB", help="Into an open output: 20 log of the turns ratio. 12:1 is 21.6 dB, an isolation transformer 0 to 1 dB."
+        "Loss",
+        "loss",
+        "21.6 dB",
+        help="Into an open output: 20 log of the turns ratio. 12:1 is 21.6 dB, an isolation transformer 0 to 1 dB.",
     )
-    pad_db: Figure | None = figure("Pad loss", "loss", "20 dB", help="Of the switch ahead of it, for loudspeaker and hot line levels.")
+    pad_db: Figure | None = figure(
+        "Pad loss", "loss", "20 dB", help="Of the switch ahead of it, for loudspeaker and hot line levels."
+    )
     max_level_v: Figure = figure(
         "Maximum level", "voltage_at_frequency", "+19 dBu @ 20 Hz",
         help="Largest sine at its input, and the frequency it is given at: below that it falls 6 dB per octave.",
     )  # fmt: skip
-    z_in_ohm: Figure = figure("Input impedance", "impedance", "140 k", help="With a microphone input behind it: 50 to 250 kohm passive, 1 Mohm active.")
-    z_out_ohm: Figure = figure("Output impedance", "impedance", "150 ohm", help="With its usual source ahead of it.")
+    z_in_ohm: Figure = figure(
+        "Input impedance",
+        "impedance",
+        "140 k",
+        help="With a microphone input behind it: 50 to 250 kohm passive, 1 Mohm active.",
+    )
+    z_out_ohm: Figure = figure(
+        "Output impedance", "impedance", "150 ohm", help="With its usual source ahead of it."
+    )
     noise: Figure | None = figure(
-        "S/N or noise", "noise", references=("nominal", "max"), help="Of an active one, at its output. Passive: thermal noise of its output impedance."
+        "S/N or noise",
+        "noise",
+        references=("nominal", "max"),
+        help="Of an active one, at its output. Passive: thermal noise of its output impedance.",
     )
     build: Literal["transformer", "active"] = option(
-        "Build", "transformer", choices=("transformer", "active"), help="Active: no saturation at low frequencies."
+        "Build",
+        "transformer",
+        choices=("transformer", "active"),
+        help="Active: no saturation at low frequencies.",
     )
     form: Form = form_option("transformer")
     pad: Setting = switch("Pad", help="Whether the pad is in. It raises the level the box can take.")
@@ -69,7 +87,9 @@ class DirectBox(Stage):
             clip_weight=flux if self.build == "transformer" else None,
         )  # fmt: skip
         return ActiveStage(
-            (box,), {"in": Input("box", values["z_in_ohm"])}, {"out": Output("box", values["z_out_ohm"], self.form)}
+            (box,),
+            {"in": Input("box", values["z_in_ohm"])},
+            {"out": Output("box", values["z_out_ohm"], self.form)},
         )
 
     def summary(self) -> str:

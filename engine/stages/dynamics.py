@@ -24,28 +24,72 @@ class DynamicsProcessor(Stage):
     title: ClassVar[str] = "Dynamics"
     family: ClassVar[str] = "Processing"
     order: ClassVar[int] = 20
-    help: ClassVar[str] = "Compressor: above the threshold the level rises by 1/ratio. Limiter: it does not rise at all."
+    help: ClassVar[str] = (
+        "Compressor: above the threshold the level rises by 1/ratio. Limiter: it does not rise at all."
+    )
 
     kind: Literal["dynamics"] = "dynamics"
-    max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-90 dBu unweighted", references=("nominal", "max"), help="At its output, with unity gain and nothing compressed.")
-    nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to.")
+    max_v: Figure = figure(
+        "Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output."
+    )
+    noise: Figure | None = figure(
+        "S/N or noise",
+        "noise",
+        "-90 dBu unweighted",
+        references=("nominal", "max"),
+        help="At its output, with unity gain and nothing compressed.",
+    )
+    nominal_v: Figure = figure(
+        "Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to."
+    )
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 50 kohm is usual.")
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 600 ohm is usual.")
     form: Form = form_option()
     signal: Signal = signal_option()
     mode: Literal["compressor", "limiter"] = option(
-        "Mode", "compressor", choices=("compressor", "limiter"), help="A limiter's ratio is infinite, whatever the ratio control says."
+        "Mode",
+        "compressor",
+        choices=("compressor", "limiter"),
+        help="A limiter's ratio is infinite, whatever the ratio control says.",
     )
     detector: Literal["rms", "peak"] = option(
-        "Detector", "rms", choices=("rms", "peak"), help="What is held against the threshold: the programme's rms, or its sine-scaled peak."
+        "Detector",
+        "rms",
+        choices=("rms", "peak"),
+        help="What is held against the threshold: the programme's rms, or its sine-scaled peak.",
     )
     threshold_db: Setting = control(
-        "Threshold", "dBu or dBFS", -50.0, 24.0, 0.5, 10.0, marking="number", help="In dBu, in a digital path in dBFS: the level from which on it acts."
+        "Threshold",
+        "dBu or dBFS",
+        -50.0,
+        24.0,
+        0.5,
+        10.0,
+        marking="number",
+        help="In dBu, in a digital path in dBFS: the level from which on it acts.",
     )
-    ratio: Setting = control("Ratio", ": 1", 1.0, 20.0, 0.5, 4.0, marking="number", help="4 : 1 lets 10 dB more in come out as 2.5 dB more.")
-    make_up_db: Setting = control("Make-up", "dB", -20.0, 20.0, 0.5, 0.0, help="Gain behind the detector. It raises the noise ahead of it too.")
-    inserted: Setting = switch("In circuit", off="bypassed", on="in", help="Bypassed, the level passes unchanged.", typical=True)
+    ratio: Setting = control(
+        "Ratio",
+        ": 1",
+        1.0,
+        20.0,
+        0.5,
+        4.0,
+        marking="number",
+        help="4 : 1 lets 10 dB more in come out as 2.5 dB more.",
+    )
+    make_up_db: Setting = control(
+        "Make-up",
+        "dB",
+        -20.0,
+        20.0,
+        0.5,
+        0.0,
+        help="Gain behind the detector. It raises the noise ahead of it too.",
+    )
+    inserted: Setting = switch(
+        "In circuit", off="bypassed", on="in", help="Bypassed, the level passes unchanged.", typical=True
+    )
 
     def in_use(self, name: str) -> bool:
         return name != "ratio" or self.mode == "compressor"

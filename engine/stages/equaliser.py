@@ -12,7 +12,7 @@ from engine.bands import BAND_MID_HZ, Axis
 from engine.figures import Figure
 from engine.sections import filters
 from engine.sections.attenuator import is_on, position_gain
-from engine.sections.base import NEVER, Active, ActiveStage, Domain, Input, Output, StageSections
+from engine.sections.base import NEVER, Active, ActiveStage, Input, Output, StageSections
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, switch
@@ -37,18 +37,26 @@ class Equaliser(Parametric, Stage):
         "Graphic gains", "level_db", many=True,
         help="31 gains from 20 Hz in third-octaves, or 10 from 31.5 Hz in octaves. Leave empty where it has no graphic set.",
     )  # fmt: skip
-    max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output.")
+    max_v: Figure = figure(
+        "Maximum level", "voltage", "+22 dBu", help="The largest clean sine, at its input and at its output."
+    )
     noise: Figure | None = figure(
         "S/N or noise", "noise", "-90 dBu unweighted", references=("nominal", "max"),
         help="With every gain flat. It stands ahead of the filters here: boost raises it.",
     )  # fmt: skip
-    nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to.")
+    nominal_v: Figure = figure(
+        "Nominal level", "voltage", "+4 dBu", help="What an S/N without a maximum refers to."
+    )
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 50 kohm is usual.")
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 600 ohm is usual.")
     form: Form = form_option()
     signal: Signal = signal_option()
-    bypass: Setting = switch("Bypass", off="off", on="bypassed", help="Takes all filters out; the level control stays.")
-    level_db: Setting = control("Level", "dB", -40.0, 12.0, 0.5, 0.0, help="Output level, behind the filters.", off_at_low=True)
+    bypass: Setting = switch(
+        "Bypass", off="off", on="bypassed", help="Takes all filters out; the level control stays."
+    )
+    level_db: Setting = control(
+        "Level", "dB", -40.0, 12.0, 0.5, 0.0, help="Output level, behind the filters.", off_at_low=True
+    )
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal)),)
@@ -59,12 +67,21 @@ class Equaliser(Parametric, Stage):
     def sections(self, values: Values, axis: Axis) -> StageSections:
         is_digital = self.signal == "digital"
         clip = NEVER if is_digital else np.asarray(values["max_v"]) ** 2
-        references = {"nominal": np.asarray(values["nominal_v"]) ** 2, "max": np.asarray(values["max_v"]) ** 2}
+        references = {
+            "nominal": np.asarray(values["nominal_v"]) ** 2,
+            "max": np.asarray(values["max_v"]) ** 2,
+        }
         noise = 0.0 if is_digital else stated_noise(axis, values, "noise", references)
         curve = self.equaliser(values, axis) * self._graphic(values, axis)
         return ActiveStage(
             (
-                Active("filters", gain=np.where(is_on(values["bypass"]), 1.0, curve), clip_in=clip, clip_out=clip, noise_ahead=noise),
+                Active(
+                    "filters",
+                    gain=np.where(is_on(values["bypass"]), 1.0, curve),
+                    clip_in=clip,
+                    clip_out=clip,
+                    noise_ahead=noise,
+                ),
                 Active("level", gain=position_gain(values["level_db"]), clip_out=clip),
             ),
             {"in": Input("filters", values["z_in_ohm"])},

@@ -22,12 +22,17 @@ class LineCable(Stage):
     family: ClassVar[str] = "Lines"
     order: ClassVar[int] = 20
     domain: ClassVar[Domain] = Domain.ANALOGUE
-    help: ClassVar[str] = "Its capacitance against the source impedance takes the top off long lines; its resistance costs next to nothing."
+    help: ClassVar[str] = (
+        "Its capacitance against the source impedance takes the top off long lines; its resistance costs next to nothing."
+    )
 
     kind: Literal["line_cable"] = "line_cable"
     length_m: Figure = figure("Length", "length", "30 m", help="From output to input.")
     capacitance_f_per_m: Figure = figure(
-        "Capacitance", "capacitance_per_length", "100 pF/m", help="Between the conductors: 50 to 150 pF/m, network cable about 50."
+        "Capacitance",
+        "capacitance_per_length",
+        "100 pF/m",
+        help="Between the conductors: 50 to 150 pF/m, network cable about 50.",
     )
     resistance_ohm_per_m: Figure = figure(
         "Resistance", "resistance_per_length", "160 ohm/km loop",

@@ -9,7 +9,17 @@ import numpy as np
 
 from engine.bands import Axis
 from engine.figures import Figure
-from engine.sections.base import NEVER, Active, ActiveStage, Domain, Dynamics, Input, Number, Output, StageSections
+from engine.sections.base import (
+    NEVER,
+    Active,
+    ActiveStage,
+    Domain,
+    Dynamics,
+    Input,
+    Number,
+    Output,
+    StageSections,
+)
 from engine.units import pa2_from_spl, power_from_db
 
 from .base import Port, Stage
@@ -27,7 +37,9 @@ class Loudspeaker(Stage):
     family: ClassVar[str] = "Outputs"
     order: ClassVar[int] = 30
     is_loudspeaker: ClassVar[bool] = True
-    help: ClassVar[str] = "Sensitivity, impedance and ratings. It has no clip point of its own: watts are judged against its ratings."
+    help: ClassVar[str] = (
+        "Sensitivity, impedance and ratings. It has no clip point of its own: watts are judged against its ratings."
+    )
 
     kind: Literal["loudspeaker"] = "loudspeaker"
     sensitivity_spl: Figure = figure(
@@ -35,16 +47,34 @@ class Loudspeaker(Stage):
         help="At 1 m for 1 W, or for 2.83 V: into 4 ohm those differ by 3 dB, so say which. 84 to 112 dB.",
     )  # fmt: skip
     z_ohm: Figure = figure("Impedance", "impedance", "8 ohm", help="Nominal, of one box: 4, 8 or 16 ohm.")
-    continuous_w: Figure | None = figure("Continuous power", "power", "300 W", help="AES or IEC rating of one box, pink noise with 6 dB crest.")
-    programme_w: Figure | None = figure("Programme power", "power", help="Usually twice the continuous rating.")
-    peak_w: Figure | None = figure("Peak power", "power", help="Usually four times the continuous rating, which it is taken for when left empty.")
+    continuous_w: Figure | None = figure(
+        "Continuous power", "power", "300 W", help="AES or IEC rating of one box, pink noise with 6 dB crest."
+    )
+    programme_w: Figure | None = figure(
+        "Programme power", "power", help="Usually twice the continuous rating."
+    )
+    peak_w: Figure | None = figure(
+        "Peak power",
+        "power",
+        help="Usually four times the continuous rating, which it is taken for when left empty.",
+    )
     compression_db: Figure | None = figure(
         "Power compression", "level_db",
-        help="What the hot voice coil loses at the programme's level: 1 to 3 dB near its continuous rating. Hiss is heard with a cool coil.",
+        help="What the hot voice coil loses at the programme's level: 1 to 3 dB near its continuous rating. "
+        "Hiss is heard with a cool coil.",
     )  # fmt: skip
-    directivity_q: Figure = figure("Directivity factor", "directivity", "Q 10", help="1 is all round, 10 a box with a horn, 50 a narrow array. Sets the room's share.")
-    boxes: int = option("Boxes", 1, low=1, high=64, help="How many alike hang on this line, driven by one amplifier channel.")
-    wiring: Literal["parallel", "series"] = option("Wiring", "parallel", choices=("parallel", "series"), help="How those boxes are wired.")
+    directivity_q: Figure = figure(
+        "Directivity factor",
+        "directivity",
+        "Q 10",
+        help="1 is all round, 10 a box with a horn, 50 a narrow array. Sets the room's share.",
+    )
+    boxes: int = option(
+        "Boxes", 1, low=1, high=64, help="How many alike hang on this line, driven by one amplifier channel."
+    )
+    wiring: Literal["parallel", "series"] = option(
+        "Wiring", "parallel", choices=("parallel", "series"), help="How those boxes are wired."
+    )
     adds: Literal["coherent", "power"] = option(
         "Boxes add", "coherent", choices=("coherent", "power"),
         help="Side by side they add as pressure (+6 dB for two), spread out as power (+3 dB).",
@@ -61,7 +91,7 @@ class Loudspeaker(Stage):
 
     def rated_w(self, values: Values, rating: str) -> float | None:
         """ "continuous", "programme" or "peak" [W], all boxes; peak is four times continuous where it is not given."""
-        one: Number | None = values[f"{rating}_w"] if f"{rating}_w" in values else None
+        one: Number | None = values.get(f"{rating}_w", None)
         if one is None and rating == "peak" and "continuous_w" in values:
             one = values["continuous_w"] * PEAK_OVER_CONTINUOUS
         return None if one is None else float(np.mean(np.asarray(one))) * self.boxes
@@ -74,13 +104,19 @@ class Loudspeaker(Stage):
         shared = 1.0 if self.wiring == "parallel" else 1.0 / self.boxes**2
         hot: Dynamics | None = None
         if "compression_db" in values:
-            hot = Dynamics(NEVER, 1.0, power_from_db(-np.asarray(values["compression_db"])), spares_noise=True)
+            hot = Dynamics(
+                NEVER, 1.0, power_from_db(-np.asarray(values["compression_db"])), spares_noise=True
+            )
         box = Active("box", gain=one_box * together * shared, dynamics=hot, domain=Domain.ACOUSTIC)
         output = Output("box", reference_m=1.0, directivity_q=values["directivity_q"])
         return ActiveStage((box,), {"in": Input("box", self.load_ohm(values))}, {"out": output})
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
-        if "peak_w" in values and "continuous_w" in values and np.any(values["peak_w"] < values["continuous_w"]):
+        if (
+            "peak_w" in values
+            and "continuous_w" in values
+            and np.any(values["peak_w"] < values["continuous_w"])
+        ):
             yield f"Peak power of {self.name} is below its continuous power: a peak rating is usually four times as much"
 
     def summary(self) -> str:

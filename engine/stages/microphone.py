@@ -25,25 +25,36 @@ class Microphone(Stage):
     title: ClassVar[str] = "Microphone"
     family: ClassVar[str] = "Inputs"
     order: ClassVar[int] = 20
-    help: ClassVar[str] = "Turns sound into a small voltage. With no self-noise given it has the thermal noise of its own impedance."
+    help: ClassVar[str] = (
+        "Turns sound into a small voltage. With no self-noise given it has the thermal noise of its own impedance."
+    )
 
     kind: Literal["microphone"] = "microphone"
     sensitivity_v_per_pa: Figure = figure(
         "Sensitivity", "mic_sensitivity", "2 mV/Pa",
         help="Open-circuit output at 1 Pa (94 dB SPL). Dynamic 1 to 3 mV/Pa, condenser 5 to 50. Older sheets give dB re 1 V/µbar.",
     )  # fmt: skip
-    z_ohm: Figure = figure("Source impedance", "impedance", "200 ohm", help="As its sheet gives it; 50 to 300 ohm is usual.")
+    z_ohm: Figure = figure(
+        "Source impedance", "impedance", "200 ohm", help="As its sheet gives it; 50 to 300 ohm is usual."
+    )
     self_noise_spl: Figure | None = figure(
         "Self-noise", "self_noise",
         help="Equivalent sound level of its own noise, usually in dB(A): 5 to 25. Sheets may give S/N instead: 94 less that. "
         "A dynamic microphone has none stated.",
     )  # fmt: skip
     max_spl: Figure | None = figure(
-        "Maximum level", "spl", help="The largest sine it takes at the distortion its sheet names, with no pad: 120 to 150 dB SPL."
+        "Maximum level",
+        "spl",
+        help="The largest sine it takes at the distortion its sheet names, with no pad: 120 to 150 dB SPL.",
     )
-    pad_db: Figure | None = figure("Pad loss", "loss", help="Of a pad inside the microphone, ahead of its electronics; 10 or 20 dB.")
+    pad_db: Figure | None = figure(
+        "Pad loss", "loss", help="Of a pad inside the microphone, ahead of its electronics; 10 or 20 dB."
+    )
     form: Form = form_option("transformer")
-    pad: Setting = switch("Pad", help="Whether the microphone's own pad is in. It raises the level it can take; its noise stays.")
+    pad: Setting = switch(
+        "Pad",
+        help="Whether the microphone's own pad is in. It raises the level it can take; its noise stays.",
+    )
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", Domain.ACOUSTIC, many=True),)

@@ -28,9 +28,15 @@ class MixBus(Stage):
     help: ClassVar[str] = "The sum of channels or buses: a main mix, a group, an auxiliary send, a matrix."
 
     kind: Literal["mix_bus"] = "mix_bus"
-    fader_min_db: Figure = figure("Lowest fader mark", "level_db", "-60 dB", help="The lowest mark above off.")
-    fader_max_db: Figure = figure("Highest fader mark", "level_db", "10 dB", help="Gain with the fader at its top.")
-    max_output_v: Figure = figure("Maximum output", "voltage", "+22 dBu", help="The largest clean sine: +18 to +28 dBu.")
+    fader_min_db: Figure = figure(
+        "Lowest fader mark", "level_db", "-60 dB", help="The lowest mark above off."
+    )
+    fader_max_db: Figure = figure(
+        "Highest fader mark", "level_db", "10 dB", help="Gain with the fader at its top."
+    )
+    max_output_v: Figure = figure(
+        "Maximum output", "voltage", "+22 dBu", help="The largest clean sine: +18 to +28 dBu."
+    )
     summing_noise: Figure | None = figure(
         "Summing noise", "noise", references=("nominal", "max"),
         help="Of the summing amplifier, ahead of the bus fader, with as many channels routed as in the show.",
@@ -39,10 +45,21 @@ class MixBus(Stage):
         "Residual noise", "noise", "-86 dBu unweighted", references=("nominal", "max"),
         help="At the output with faders down: behind the bus fader, which does not lower it. −80 to −95 dBu.",
     )  # fmt: skip
-    nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="Output level with the meter at 0: +4 dBu or 0 dBu.")
-    meter_zero_v: Figure = figure("Meter reads 0 at", "voltage", "+4 dBu", help="Output level at which the meter shows 0.")
-    meter_zero_dbfs: Figure = figure("Digital meter reads 0 at", "dbfs", "0 dBFS", help="For a digital bus: the level shown as 0.")
-    z_in_ohm: Figure = figure("Input impedance", "impedance", "1 M", help="Of each input. Inside a mixer nothing loads its channels; from outside 10 to 30 kohm.")
+    nominal_v: Figure = figure(
+        "Nominal level", "voltage", "+4 dBu", help="Output level with the meter at 0: +4 dBu or 0 dBu."
+    )
+    meter_zero_v: Figure = figure(
+        "Meter reads 0 at", "voltage", "+4 dBu", help="Output level at which the meter shows 0."
+    )
+    meter_zero_dbfs: Figure = figure(
+        "Digital meter reads 0 at", "dbfs", "0 dBFS", help="For a digital bus: the level shown as 0."
+    )
+    z_in_ohm: Figure = figure(
+        "Input impedance",
+        "impedance",
+        "1 M",
+        help="Of each input. Inside a mixer nothing loads its channels; from outside 10 to 30 kohm.",
+    )
     z_out_ohm: Figure = figure("Output impedance", "impedance", "75 ohm", help="50 to 150 ohm is usual.")
     form: Form = form_option()
     signal: Signal = signal_option()
@@ -52,12 +69,25 @@ class MixBus(Stage):
         "voltage. Power: all as power.",
     )  # fmt: skip
     meter: Literal["none", "VU", "quasi-peak", "sample peak"] = option(
-        "Meter", "VU", choices=("none", "VU", "quasi-peak", "sample peak"), help="What kind of meter stands at the output."
+        "Meter",
+        "VU",
+        choices=("none", "VU", "quasi-peak", "sample peak"),
+        help="What kind of meter stands at the output.",
     )
     fader_db: Setting = control(
-        "Bus fader", "dB", "fader_min_db", "fader_max_db", 0.5, 0.0, off_at_low=True, work=(-20.0, 5.0), help="Behind the sum."
+        "Bus fader",
+        "dB",
+        "fader_min_db",
+        "fader_max_db",
+        0.5,
+        0.0,
+        off_at_low=True,
+        work=(-20.0, 5.0),
+        help="Behind the sum.",
     )
-    mute: Setting = switch("Mute", off="on air", on="muted", help="Muted, nothing passes but the output's own noise.")
+    mute: Setting = switch(
+        "Mute", off="on air", on="muted", help="Muted, nothing passes but the output's own noise."
+    )
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal), many=True),)

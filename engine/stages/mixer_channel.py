@@ -18,7 +18,12 @@ from .declared import Values
 from .parametric import boost, corner, sharpness
 from .shared import Signal, domain_of, marked_db, signal_option, stated_noise
 
-TAPS = (("before_equaliser", "trim"), ("before_fader", "equaliser"), ("after_fader", "fader"), ("after_mute", "mute"))
+TAPS = (
+    ("before_equaliser", "trim"),
+    ("before_fader", "equaliser"),
+    ("after_fader", "fader"),
+    ("after_mute", "mute"),
+)
 
 
 class MixerChannel(Stage):
@@ -32,16 +37,37 @@ class MixerChannel(Stage):
     kind: Literal["mixer_channel"] = "mixer_channel"
     trim_min_db: Figure = figure("Lowest trim", "level_db", "-20 dB", help="End of the trim's range.")
     trim_max_db: Figure = figure("Highest trim", "level_db", "20 dB", help="Other end of the trim's range.")
-    fader_min_db: Figure = figure("Lowest fader mark", "level_db", "-60 dB", help="The lowest mark above off; below it the fader is off.")
-    fader_max_db: Figure = figure("Highest fader mark", "level_db", "10 dB", help="Gain with the fader at its top: +10 dB is usual, some have 0, +6 or +12.")
-    max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="The largest clean sine inside the strip: +18 to +24 dBu.")
+    fader_min_db: Figure = figure(
+        "Lowest fader mark",
+        "level_db",
+        "-60 dB",
+        help="The lowest mark above off; below it the fader is off.",
+    )
+    fader_max_db: Figure = figure(
+        "Highest fader mark",
+        "level_db",
+        "10 dB",
+        help="Gain with the fader at its top: +10 dB is usual, some have 0, +6 or +12.",
+    )
+    max_v: Figure = figure(
+        "Maximum level", "voltage", "+22 dBu", help="The largest clean sine inside the strip: +18 to +24 dBu."
+    )
     noise: Figure | None = figure(
         "Strip noise", "noise", "-95 dBu unweighted", references=("nominal", "max"),
         help="Of the strip itself with trim and fader at 0 dB, ahead of the fader; −90 to −100 dBu.",
     )  # fmt: skip
-    nominal_v: Figure = figure("Nominal level", "voltage", "+4 dBu", help="Level inside the strip with the meter at 0.")
-    z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="Of the line input: 10 to 30 kohm.")
-    z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="Of direct and insert outputs; inside the mixer nothing loads it.")
+    nominal_v: Figure = figure(
+        "Nominal level", "voltage", "+4 dBu", help="Level inside the strip with the meter at 0."
+    )
+    z_in_ohm: Figure = figure(
+        "Input impedance", "impedance", "20 k", help="Of the line input: 10 to 30 kohm."
+    )
+    z_out_ohm: Figure = figure(
+        "Output impedance",
+        "impedance",
+        "100 ohm",
+        help="Of direct and insert outputs; inside the mixer nothing loads it.",
+    )
     low_cut_hz: Figure = corner("Low cut", "80 Hz")
     low_hz: Figure = corner("Low equaliser", "100 Hz")
     mid_hz: Figure = corner("Middle equaliser", "1 kHz")
@@ -49,7 +75,16 @@ class MixerChannel(Stage):
     high_hz: Figure = corner("High equaliser", "10 kHz")
     signal: Signal = signal_option()
 
-    trim_db: Setting = control("Trim", "dB", "trim_min_db", "trim_max_db", 0.5, 0.0, help="Ahead of everything else in the strip.", marking="clock")
+    trim_db: Setting = control(
+        "Trim",
+        "dB",
+        "trim_min_db",
+        "trim_max_db",
+        0.5,
+        0.0,
+        help="Ahead of everything else in the strip.",
+        marking="clock",
+    )
     low_cut: Setting = switch("Low cut", help="18 dB per octave.")
     low_db: Setting = boost("Low")
     mid_db: Setting = boost("Middle")
@@ -58,7 +93,9 @@ class MixerChannel(Stage):
         "Fader", "dB", "fader_min_db", "fader_max_db", 0.5, 0.0, off_at_low=True, work=(-20.0, 5.0),
         help="A hand has fine control between −20 and +5 dB, where the marks lie far apart.",
     )  # fmt: skip
-    mute: Setting = switch("Mute", off="on air", on="muted", help="Muted, nothing passes; sends taken ahead of it still do.")
+    mute: Setting = switch(
+        "Mute", off="on air", on="muted", help="Muted, nothing passes; sends taken ahead of it still do."
+    )
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal)),)
@@ -74,7 +111,9 @@ class MixerChannel(Stage):
         clip = NEVER if is_digital else max2
         references = {"nominal": np.asarray(values["nominal_v"]) ** 2, "max": max2}
         noise = 0.0 if is_digital else stated_noise(axis, values, "noise", references)
-        curve = np.where(is_on(values["low_cut"]), filters.butterworth_high_pass(f_hz, values["low_cut_hz"], 3), 1.0)
+        curve = np.where(
+            is_on(values["low_cut"]), filters.butterworth_high_pass(f_hz, values["low_cut_hz"], 3), 1.0
+        )
         curve = curve * filters.low_shelf(f_hz, values["low_hz"], values["low_db"])
         curve = curve * filters.bell(f_hz, values["mid_hz"], values["mid_db"], values["mid_q"])
         curve = curve * filters.high_shelf(f_hz, values["high_hz"], values["high_db"])
@@ -86,7 +125,9 @@ class MixerChannel(Stage):
         )
         z_out = values["z_out_ohm"]
         taps = {name: Output(section, z_out) for name, section in TAPS}
-        return ActiveStage(sections, {"in": Input("trim", values["z_in_ohm"])}, {"out": Output("mute", z_out), **taps})
+        return ActiveStage(
+            sections, {"in": Input("trim", values["z_in_ohm"])}, {"out": Output("mute", z_out), **taps}
+        )
 
     def summary(self) -> str:
         return "muted" if self.mute.value else marked_db(self.fader_db)

@@ -36,12 +36,19 @@ def sharpness(typical: str) -> Any:
 
 def boost(label: str) -> Any:
     """A filter's gain."""
-    return control(label, "dB", -15.0, 15.0, 0.5, 0.0, help="Boost takes headroom at its frequency, cut does not.")
+    return control(
+        label, "dB", -15.0, 15.0, 0.5, 0.0, help="Boost takes headroom at its frequency, cut does not."
+    )
 
 
 def slope_option(label: str, default: Slope) -> Any:
     """How steep a high-pass or low-pass is."""
-    return option(label, default, choices=tuple(filters.SLOPES), help="Butterworth is −3 dB at its corner, Linkwitz–Riley −6 dB.")
+    return option(
+        label,
+        default,
+        choices=tuple(filters.SLOPES),
+        help="Butterworth is −3 dB at its corner, Linkwitz–Riley −6 dB.",
+    )
 
 
 class Parametric(Declared):
@@ -74,12 +81,20 @@ class Parametric(Declared):
     def equaliser(self, values: Values, axis: Axis) -> Array:
         """|H|² of the whole equaliser [batch, F]."""
         f_hz = axis.f_hz
-        found = np.where(is_on(values["high_pass"]), filters.high_pass(f_hz, values["high_pass_hz"], self.high_pass_slope), 1.0)
-        found = found * np.where(is_on(values["low_pass"]), filters.low_pass(f_hz, values["low_pass_hz"], self.low_pass_slope), 1.0)
+        found = np.where(
+            is_on(values["high_pass"]),
+            filters.high_pass(f_hz, values["high_pass_hz"], self.high_pass_slope),
+            1.0,
+        )
+        found = found * np.where(
+            is_on(values["low_pass"]), filters.low_pass(f_hz, values["low_pass_hz"], self.low_pass_slope), 1.0
+        )
         found = found * filters.low_shelf(f_hz, values["low_shelf_hz"], values["low_shelf_db"])
         found = found * filters.high_shelf(f_hz, values["high_shelf_hz"], values["high_shelf_db"])
         for n in BELLS:
-            found = found * filters.bell(f_hz, values[f"bell_{n}_hz"], values[f"bell_{n}_db"], values[f"bell_{n}_q"])
+            found = found * filters.bell(
+                f_hz, values[f"bell_{n}_hz"], values[f"bell_{n}_db"], values[f"bell_{n}_q"]
+            )
         return np.asarray(found)
 
     def sharpest_q(self) -> float:

@@ -30,37 +30,63 @@ class PowerAmplifier(Stage):
     title: ClassVar[str] = "Power amplifier"
     family: ClassVar[str] = "Outputs"
     order: ClassVar[int] = 10
-    help: ClassVar[str] = "One channel. Give two of rated power, voltage gain and input sensitivity; the third follows."
+    help: ClassVar[str] = (
+        "One channel. Give two of rated power, voltage gain and input sensitivity; the third follows."
+    )
 
     kind: Literal["power_amplifier"] = "power_amplifier"
     rated_power_w: tuple[Figure, ...] = figure(
         "Rated power", "power_at_load", "500 W @ 8 ohm; 800 W @ 4 ohm", many=True,
         help="Continuous sine power with its load, one line for each load given. The first is what sensitivity and S/N refer to.",
     )  # fmt: skip
-    gain_db: Figure | None = figure("Voltage gain", "gain", "32 dB", help="With the attenuator open: 26 or 32 dB, x20, x40 are usual.")
+    gain_db: Figure | None = figure(
+        "Voltage gain", "gain", "32 dB", help="With the attenuator open: 26 or 32 dB, x20, x40 are usual."
+    )
     sensitivity_v: Figure | None = figure(
-        "Input sensitivity", "sensitivity", help="Input that drives it to its rated power: 0.775 V (0 dBu), 1 V, 1.4 V, +4 dBu."
+        "Input sensitivity",
+        "sensitivity",
+        help="Input that drives it to its rated power: 0.775 V (0 dBu), 1 V, 1.4 V, +4 dBu.",
     )
     range_gains_db: tuple[Figure, ...] = figure(
-        "Ranges by gain", "gain", many=True, help="Where a switch selects the gain: every position, such as 26 dB and 32 dB."
+        "Ranges by gain",
+        "gain",
+        many=True,
+        help="Where a switch selects the gain: every position, such as 26 dB and 32 dB.",
     )
     range_sensitivities_v: tuple[Figure, ...] = figure(
-        "Ranges by sensitivity", "sensitivity", many=True, help="Positions of that switch marked as a sensitivity, such as 0.775 V and 1.4 V."
+        "Ranges by sensitivity",
+        "sensitivity",
+        many=True,
+        help="Positions of that switch marked as a sensitivity, such as 0.775 V and 1.4 V.",
     )
     noise: Figure = figure(
         "S/N or noise", "noise", "105 dB(A) re rated", references=("1 W", "rated", "peak"),
-        help="Re rated power, re 1 W or as a residual. It stands behind the attenuator: turning down does not lower it. 95 to 115 dB(A) re rated.",
+        help="Re rated power, re 1 W or as a residual. It stands behind the attenuator: turning down does not lower it. "
+        "95 to 115 dB(A) re rated.",
     )  # fmt: skip
     max_input_v: Figure | None = figure(
-        "Input stage maximum", "voltage", "+21 dBu", help="What the stage ahead of the attenuator takes: +15 to +24 dBu. Rarely on sheets."
+        "Input stage maximum",
+        "voltage",
+        "+21 dBu",
+        help="What the stage ahead of the attenuator takes: +15 to +24 dBu. Rarely on sheets.",
     )
     min_load_ohm: Figure = figure("Minimum load", "impedance", "4 ohm", help="Per channel, not bridged.")
     damping_factor: Figure | None = figure(
-        "Damping factor", "damping_factor", "200", help="At the first rated load: 100 to 1000. Output impedance is load over damping."
+        "Damping factor",
+        "damping_factor",
+        "200",
+        help="At the first rated load: 100 to 1000. Output impedance is load over damping.",
     )
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="10 to 30 kohm balanced is usual.")
-    lowest_db: Figure = figure("Lowest attenuator mark", "level_db", "-40 dB", help="The last mark before off.")
-    step_db: Figure = figure("Attenuator step", "level_db", "1 dB", help="What one detent changes near the top; 0.5 dB for digital ones.")
+    lowest_db: Figure = figure(
+        "Lowest attenuator mark", "level_db", "-40 dB", help="The last mark before off."
+    )
+    step_db: Figure = figure(
+        "Attenuator step",
+        "level_db",
+        "1 dB",
+        help="What one detent changes near the top; 0.5 dB for digital ones.",
+    )
     attenuator: Literal["fitted", "none"] = option(
         "Attenuator", "fitted", choices=("fitted", "none"), help="None: a fixed-gain amplifier."
     )
@@ -68,7 +94,9 @@ class PowerAmplifier(Stage):
         "Mode", "single", choices=("single", "bridged"),
         help="Bridged: two channels in opposition. Twice the voltage (+6.02 dB), and the least load doubles.",
     )  # fmt: skip
-    sensitivity_range: Setting = control("Sensitivity", "", help="The gain or sensitivity switch, often at the rear.", marking="switch")
+    sensitivity_range: Setting = control(
+        "Sensitivity", "", help="The gain or sensitivity switch, often at the rear.", marking="switch"
+    )
     attenuator_db: Setting = control(
         "Attenuator", "dB", "lowest_db", 0.0, "step_db", 0.0, off_at_low=True, marking="detent",
         help="Between input stage and power stage: it moves the level, not the amplifier's own output noise or clip point.",
@@ -98,7 +126,7 @@ class PowerAmplifier(Stage):
         if "rated_power_w.0" in values:
             return np.asarray(values["rated_power_w.0"]) * values["rated_power_w.0.load_ohm"]
         if "gain_db" in values and "sensitivity_v" in values:
-            return np.asarray(values["sensitivity_v"]) ** 2 * power_from_db(values["gain_db"])
+            return np.asarray(np.asarray(values["sensitivity_v"]) ** 2 * power_from_db(values["gain_db"]))
         raise ValueError(f"{self.name} needs two of rated power, voltage gain and input sensitivity")
 
     def gain2(self, values: Values) -> Number:
@@ -109,10 +137,12 @@ class PowerAmplifier(Stage):
         if ranges:
             return chosen(values.get("sensitivity_range", 0.0), ranges)
         if "gain_db" in values:
-            return power_from_db(values["gain_db"])
+            return np.asarray(power_from_db(values["gain_db"]))
         if "sensitivity_v" in values:
             return rated2 / np.asarray(values["sensitivity_v"]) ** 2
-        raise ValueError(f"{self.name} needs its voltage gain or its input sensitivity beside the rated power")
+        raise ValueError(
+            f"{self.name} needs its voltage gain or its input sensitivity beside the rated power"
+        )
 
     def first_load_ohm(self, values: Values) -> Number:
         """The load the first rating stands at; 8 ohm where no power is given."""
@@ -136,9 +166,21 @@ class PowerAmplifier(Stage):
         rated2, load = self.rated_v2(values), self.first_load_ohm(values)
         is_bridged = self.mode == "bridged"
         z_out = load / np.asarray(values["damping_factor"]) if "damping_factor" in values else 0.0
-        loaded = (1.0 + z_out / load) ** 2  # figures hold at the terminals, a section stands ahead of its impedance
-        references = {"rated": rated2, "max": rated2, "nominal": rated2, "peak": 2.0 * np.asarray(rated2), "1 W": load}
-        noise = np.asarray(stated_noise(axis, values, "noise", references)) * loaded * (2.0 if is_bridged else 1.0)
+        loaded = (
+            1.0 + z_out / load
+        ) ** 2  # figures hold at the terminals, a section stands ahead of its impedance
+        references = {
+            "rated": rated2,
+            "max": rated2,
+            "nominal": rated2,
+            "peak": 2.0 * np.asarray(rated2),
+            "1 W": load,
+        }
+        noise = (
+            np.asarray(stated_noise(axis, values, "noise", references))
+            * loaded
+            * (2.0 if is_bridged else 1.0)
+        )
         gain2 = self.gain2(values) * loaded * (4.0 if is_bridged else 1.0)
         max_input2 = np.asarray(values["max_input_v"]) ** 2 if "max_input_v" in values else NEVER
         clips = self.clip_by_load(values)
@@ -157,7 +199,9 @@ class PowerAmplifier(Stage):
         if given < 2 and not (given and (self.range_gains_db or self.range_sensitivities_v)):
             yield f"{self.name} needs two of rated power, voltage gain and input sensitivity"
         elif given == 3:
-            implied = db_from_power(np.asarray(self.rated_v2(values)) / np.asarray(values["sensitivity_v"]) ** 2)
+            implied = db_from_power(
+                np.asarray(self.rated_v2(values)) / np.asarray(values["sensitivity_v"]) ** 2
+            )
             apart = float(np.max(np.abs(implied - values["gain_db"])))
             if apart > AGREES_WITHIN_DB:
                 yield (
@@ -167,7 +211,19 @@ class PowerAmplifier(Stage):
                 )
 
     def summary(self) -> str:
-        ranges = [text for text, place in self.control_choices("sensitivity_range") if place == self.sensitivity_range.value]
-        gain = ranges[0] if self.in_use("sensitivity_range") else (self.gain_db or self.sensitivity_v or self.noise).text
-        where = f", {marked_db(self.attenuator_db)}" if self.attenuator == "fitted" and self.attenuator_db.value != 0.0 else ""
+        ranges = [
+            text
+            for text, place in self.control_choices("sensitivity_range")
+            if place == self.sensitivity_range.value
+        ]
+        gain = (
+            ranges[0]
+            if self.in_use("sensitivity_range")
+            else (self.gain_db or self.sensitivity_v or self.noise).text
+        )
+        where = (
+            f", {marked_db(self.attenuator_db)}"
+            if self.attenuator == "fitted" and self.attenuator_db.value != 0.0
+            else ""
+        )
         return f"{gain}{where}"

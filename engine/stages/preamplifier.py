@@ -29,31 +29,60 @@ class Preamplifier(Stage):
     title: ClassVar[str] = "Preamplifier"
     family: ClassVar[str] = "Inputs"
     order: ClassVar[int] = 30
-    help: ClassVar[str] = "A microphone input with gain. Its EIN belongs to the highest gain; at low gain its residual output noise leads."
+    help: ClassVar[str] = (
+        "A microphone input with gain. Its EIN belongs to the highest gain; at low gain its residual output noise leads."
+    )
 
     kind: Literal["preamplifier"] = "preamplifier"
-    gain_min_db: Figure = figure("Lowest gain", "gain", "0 dB", help="With the pad out; −10 to +15 dB is usual.")
-    gain_max_db: Figure = figure("Highest gain", "gain", "60 dB", help="With the pad out; 50 to 75 dB is usual.")
-    gain_step_db: Figure = figure("Gain step", "level_db", "1 dB", help="What one click or panel mark changes: 0.1 to 6 dB.")
-    pad_db: Figure | None = figure("Pad loss", "loss", "20 dB", help="Of the pad ahead of the gain. Leave it empty where there is none.")
+    gain_min_db: Figure = figure(
+        "Lowest gain", "gain", "0 dB", help="With the pad out; −10 to +15 dB is usual."
+    )
+    gain_max_db: Figure = figure(
+        "Highest gain", "gain", "60 dB", help="With the pad out; 50 to 75 dB is usual."
+    )
+    gain_step_db: Figure = figure(
+        "Gain step", "level_db", "1 dB", help="What one click or panel mark changes: 0.1 to 6 dB."
+    )
+    pad_db: Figure | None = figure(
+        "Pad loss", "loss", "20 dB", help="Of the pad ahead of the gain. Leave it empty where there is none."
+    )
     ein_v: tuple[Figure, ...] = figure(
         "EIN", "ein", "-127 dBu, 150 ohm, unweighted", many=True,
         help="Equivalent input noise with its source resistance: −122 to −130 dBu with 150 ohm. Without a gain it is taken at the highest; "
-        "up to three may be given, such as −110 dBu, 150 ohm, unweighted @ 20 dB. With a short circuit it looks better and is not comparable.",
+        "up to three may be given, such as −110 dBu, 150 ohm, unweighted @ 20 dB. "
+        "With a short circuit it looks better and is not comparable.",
     )  # fmt: skip
     residual: Figure | None = figure(
         "Output noise at lowest gain", "noise", "-95 dBu unweighted",
         help="Residual noise at the output with the gain at its lowest: −85 to −100 dBu. Without it EIN alone would flatter low gains.",
     )  # fmt: skip
     max_input_v: Figure = figure(
-        "Maximum input", "voltage", "+8 dBu", help="At the lowest gain with the pad out, ahead of the gain; the pad adds its loss."
+        "Maximum input",
+        "voltage",
+        "+8 dBu",
+        help="At the lowest gain with the pad out, ahead of the gain; the pad adds its loss.",
     )
-    max_output_v: Figure = figure("Maximum output", "voltage", "+24 dBu", help="The largest clean sine behind the gain: +18 to +28 dBu.")
-    z_in_ohm: Figure = figure("Input impedance", "impedance", "2 k", help="1.5 to 10 kohm is usual for microphone inputs.")
+    max_output_v: Figure = figure(
+        "Maximum output", "voltage", "+24 dBu", help="The largest clean sine behind the gain: +18 to +28 dBu."
+    )
+    z_in_ohm: Figure = figure(
+        "Input impedance", "impedance", "2 k", help="1.5 to 10 kohm is usual for microphone inputs."
+    )
     z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="50 to 200 ohm is usual.")
     form: Form = form_option()
-    pad: Setting = switch("Pad", help="Whether the pad is in. It moves the input's clip point up by its loss.")
-    gain_db: Setting = control("Gain", "dB", "gain_min_db", "gain_max_db", "gain_step_db", 50.0, help="The gain control, pad not counted.", marking="clock")
+    pad: Setting = switch(
+        "Pad", help="Whether the pad is in. It moves the input's clip point up by its loss."
+    )
+    gain_db: Setting = control(
+        "Gain",
+        "dB",
+        "gain_min_db",
+        "gain_max_db",
+        "gain_step_db",
+        50.0,
+        help="The gain control, pad not counted.",
+        marking="clock",
+    )
 
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", Domain.ANALOGUE),)
@@ -86,7 +115,10 @@ class Preamplifier(Stage):
     def _points(self, values: Values, axis: Axis) -> list[tuple[Number, Number]]:
         """EIN points (gain, noise) from the lowest gain up; noiseless where none is given."""
         names = [f"ein_v.{n}" for n in range(len(self.ein_v))]
-        points = [(values.get(f"{name}.gain_db", values["gain_max_db"]), stated_ein(axis, values, name)) for name in names]
+        points = [
+            (values.get(f"{name}.gain_db", values["gain_max_db"]), stated_ein(axis, values, name))
+            for name in names
+        ]
         points.sort(key=lambda point: float(np.mean(np.asarray(point[0]))))
         return points or [(values["gain_max_db"], np.zeros(axis.size))]
 
@@ -98,7 +130,7 @@ class Preamplifier(Stage):
         residual = stated_noise(axis, values, "residual", {"max": np.asarray(values["max_output_v"]) ** 2})
         ein = noise_over_gain(values["gain_min_db"], self._points(values, axis))
         source = thermal(axis, values.get("ein_v.0.source_ohm", USUAL_SOURCE_OHM), values["temperature_k"])
-        return np.maximum(residual - (ein + source) * power_from_db(values["gain_min_db"]), 0.0)
+        return np.asarray(np.maximum(residual - (ein + source) * power_from_db(values["gain_min_db"]), 0.0))
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         values = at_room_temperature(values)

@@ -32,20 +32,35 @@ class Seat(Stage):
     help: ClassVar[str] = "A listening position. Each link from a loudspeaker holds its distance."
 
     kind: Literal["seat"] = "seat"
-    target_spl_db: Figure | None = figure("Target level", "spl", "85 dB SPL", help="Programme level wanted here, unweighted rms.")
-    ambient: Figure | None = figure(
-        "Room noise", "ambient", "30 dB(A)", help="dB(A), an NC or an NR curve. 20 dB(A) in a fine hall, 30 to 35 in a meeting room, 45 in a full theatre."
+    target_spl_db: Figure | None = figure(
+        "Target level", "spl", "85 dB SPL", help="Programme level wanted here, unweighted rms."
     )
-    volume_m3: Figure | None = figure("Room volume", "volume", "1000 m³", help="With the reverberation time it gives the reverberant field.")
+    ambient: Figure | None = figure(
+        "Room noise",
+        "ambient",
+        "30 dB(A)",
+        help="dB(A), an NC or an NR curve. 20 dB(A) in a fine hall, 30 to 35 in a meeting room, 45 in a full theatre.",
+    )
+    volume_m3: Figure | None = figure(
+        "Room volume", "volume", "1000 m³", help="With the reverberation time it gives the reverberant field."
+    )
     rt60_s: Figure | None = figure("Reverberation time", "time", "1 s", help="RT60 of the occupied room.")
     room_constant_m2: Figure | None = figure(
-        "Room constant", "room_constant", help="Where known it stands in for volume and reverberation time [m²]."
+        "Room constant",
+        "room_constant",
+        help="Where known it stands in for volume and reverberation time [m²].",
     )
     role: Literal["reference", "nearest", "other"] = option(
-        "Role", "reference", choices=("reference", "nearest", "other"), help="The reference seat has the target; the nearest seat hears the hiss first."
+        "Role",
+        "reference",
+        choices=("reference", "nearest", "other"),
+        help="The reference seat has the target; the nearest seat hears the hiss first.",
     )
     field_kind: Literal["free field", "room"] = option(
-        "Sound field", "free field", choices=("free field", "room"), help="Free field: direct sound only. Room: the reverberant field too."
+        "Sound field",
+        "free field",
+        choices=("free field", "room"),
+        help="Free field: direct sound only. Room: the reverberant field too.",
     )
     adds: Literal["power", "coherent"] = option(
         "Loudspeakers add", "power", choices=("power", "coherent"),
@@ -66,7 +81,9 @@ class Seat(Stage):
         if reference_m is None or "distance_m" not in link:
             return 1.0
         distance = np.asarray(link["distance_m"])
-        air = absorption_db_per_m(axis.f_hz, link["temperature_k"], link["humidity_percent"]) * link.get("air_counts", 1.0)
+        air = absorption_db_per_m(axis.f_hz, link["temperature_k"], link["humidity_percent"]) * link.get(
+            "air_counts", 1.0
+        )
         through_air = 10.0 ** (-air * np.maximum(distance - reference_m, 0.0) / 10.0)
         direct = direct_gain(distance, reference_m, link.get("off_axis_db", 0.0)) * through_air
         constant = self._room_constant(values)

@@ -90,7 +90,10 @@ def stated_noise(
         return otherwise
     stated = f"{name}.reference_v"
     total = noise_total(
-        values[name], values.tag(f"{name}.reference"), reference_v2, stated_v=values[stated] if stated in values else None
+        values[name],
+        values.tag(f"{name}.reference"),
+        reference_v2,
+        stated_v=values.get(stated, None),
     )
     return white_total(axis, total, values.tag(f"{name}.weighting"))
 
@@ -100,13 +103,20 @@ def stated_ein(axis: Axis, values: Values, name: str, *, otherwise: Number = 0.0
     if name not in values:
         return otherwise
     return ein_without_source(
-        axis, values[name], values.tag(f"{name}.weighting"), values.get(f"{name}.source_ohm", 0.0), values["temperature_k"]
+        axis,
+        values[name],
+        values.tag(f"{name}.weighting"),
+        values.get(f"{name}.source_ohm", 0.0),
+        values["temperature_k"],
     )
 
 
 def drop_choices(full: str, drops: Sequence[Figure]) -> tuple[tuple[str, float], ...]:
     """The positions of a level switch: full, and each drop as its figure is typed."""
-    return ((full, 0.0), *((f"−{drop.text.lstrip('-−+ ')}", float(place)) for place, drop in enumerate(drops, start=1)))
+    return (
+        (full, 0.0),
+        *((f"−{drop.text.lstrip('-−+ ')}", float(place)) for place, drop in enumerate(drops, start=1)),
+    )
 
 
 def marked_db(setting: Setting) -> str:

@@ -29,7 +29,8 @@ class SoundSource(Stage):
     kind: Literal["sound_source"] = "sound_source"
     level_spl: Figure = figure(
         "Level", "spl", "85 dB SPL",
-        help="Programme level, rms. Speech at 0.6 m is about 65 normal, 72 raised, 15 dB more close up; a close singer 95 to 110; a drum 120 and more.",
+        help="Programme level, rms. Speech at 0.6 m is about 65 normal, 72 raised, 15 dB more close up; "
+        "a close singer 95 to 110; a drum 120 and more.",
     )  # fmt: skip
     stated_at_m: Figure | None = figure(
         "Stated at", "length",
@@ -51,8 +52,10 @@ class SoundSource(Stage):
     def sections(self, values: Values, axis: Axis) -> StageSections:
         power = pa2_from_spl(values["level_spl"])
         own = numbered(values, "own_bands_db")
-        sent = emission(axis, self.spectrum, power, values["crest_db"], own, values.tag("level_spl.weighting"))
-        distance = values["stated_at_m"] if "stated_at_m" in values else None
+        sent = emission(
+            axis, self.spectrum, power, values["crest_db"], own, values.tag("level_spl.weighting")
+        )
+        distance = values.get("stated_at_m", None)
         return ActiveStage((Active("source"),), {}, {"out": Output("source", reference_m=distance)}, sent)
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:

@@ -26,10 +26,14 @@ class SpeakerLine(Stage):
     help: ClassVar[str] = "Its resistance costs level and damping: 0.3 dB is good, 1 dB noticeable."
 
     kind: Literal["speaker_line"] = "speaker_line"
-    length_m: Figure = figure("Length", "length", "20 m", help="One way, from amplifier to loudspeaker; there and back is counted.")
+    length_m: Figure = figure(
+        "Length", "length", "20 m", help="One way, from amplifier to loudspeaker; there and back is counted."
+    )
     area_mm2: Figure = figure("Cross-section", "area", "2.5 mm²", help="Of one conductor, in mm² or AWG.")
     loop_ohm: Figure | None = figure(
-        "Loop resistance", "impedance", help="Measured, both conductors in series. Where given it stands in for length and cross-section."
+        "Loop resistance",
+        "impedance",
+        help="Measured, both conductors in series. Where given it stands in for length and cross-section.",
     )
     copper: Literal["0.0172 ohm mm²/m", "IEC 60228 class 1/2", "IEC 60228 class 5/6"] = option(
         "Copper", "0.0172 ohm mm²/m", choices=COPPERS,

@@ -8,7 +8,18 @@ import numpy as np
 
 from engine.bands import Axis
 from engine.figures import Figure
-from engine.sections.base import Active, ActiveStage, Domain, Input, Output, PassiveStage, StageSections, TwoPort, ideal_transformer, series
+from engine.sections.base import (
+    Active,
+    ActiveStage,
+    Domain,
+    Input,
+    Output,
+    PassiveStage,
+    StageSections,
+    TwoPort,
+    ideal_transformer,
+    series,
+)
 from engine.units import power_from_db
 
 from .base import Port, Stage
@@ -23,18 +34,38 @@ class Splitter(Stage):
     title: ClassVar[str] = "Splitter"
     family: ClassVar[str] = "Lines"
     order: ClassVar[int] = 40
-    help: ClassVar[str] = "One signal to several places. Passive splits share the source's current: each load lowers all the levels."
+    help: ClassVar[str] = (
+        "One signal to several places. Passive splits share the source's current: each load lowers all the levels."
+    )
 
     kind: Literal["splitter"] = "splitter"
     leg_ohm: Figure = figure(
-        "Resistance per leg", "impedance", "100 ohm", help="Resistive: in series with each output. Transformer: its winding resistance, primary side counted in."
+        "Resistance per leg",
+        "impedance",
+        "100 ohm",
+        help="Resistive: in series with each output. Transformer: its winding resistance, primary side counted in.",
     )
-    loss_db: Figure = figure("Transformer loss", "loss", "0 dB", help="Of each isolated output into an open circuit: 20 log of its ratio; 0 dB for 1:1.")
+    loss_db: Figure = figure(
+        "Transformer loss",
+        "loss",
+        "0 dB",
+        help="Of each isolated output into an open circuit: 20 log of its ratio; 0 dB for 1:1.",
+    )
     gain_db: Figure = figure("Gain", "gain", "0 dB", help="Of each output of an active splitter.")
-    max_v: Figure = figure("Maximum level", "voltage", "+22 dBu", help="Of an active splitter, at its input and outputs.")
-    noise: Figure | None = figure("S/N or noise", "noise", "-100 dBu unweighted", references=("nominal", "max"), help="Of an active splitter, at each output.")
+    max_v: Figure = figure(
+        "Maximum level", "voltage", "+22 dBu", help="Of an active splitter, at its input and outputs."
+    )
+    noise: Figure | None = figure(
+        "S/N or noise",
+        "noise",
+        "-100 dBu unweighted",
+        references=("nominal", "max"),
+        help="Of an active splitter, at each output.",
+    )
     z_in_ohm: Figure = figure("Input impedance", "impedance", "20 k", help="Of an active splitter.")
-    z_out_ohm: Figure = figure("Output impedance", "impedance", "100 ohm", help="Of each output of an active splitter.")
+    z_out_ohm: Figure = figure(
+        "Output impedance", "impedance", "100 ohm", help="Of each output of an active splitter."
+    )
     build: Literal["parallel", "resistive", "transformer", "active"] = option(
         "Build", "parallel", choices=("parallel", "resistive", "transformer", "active"),
         help="Parallel: just wired together. Transformer: the first output is direct, the others are isolated.",
@@ -53,7 +84,10 @@ class Splitter(Stage):
         return (Port("in", Domain.ANALOGUE),)
 
     def outputs(self) -> tuple[Port, ...]:
-        return tuple(Port(f"out_{n}" if n > 1 else "out", Domain.ANALOGUE, f"output {n}") for n in range(1, self.ways + 1))
+        return tuple(
+            Port(f"out_{n}" if n > 1 else "out", Domain.ANALOGUE, f"output {n}")
+            for n in range(1, self.ways + 1)
+        )
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
         if self.build == "active":
@@ -73,11 +107,19 @@ class Splitter(Stage):
         noise = stated_noise(axis, values, "noise", {"nominal": max2, "max": max2})
         names = {port.name: port.label for port in self.outputs()}
         each = tuple(
-            Active(label, gain=power_from_db(values["gain_db"]), clip_out=max2, noise_behind=noise, after=("input",))
+            Active(
+                label,
+                gain=power_from_db(values["gain_db"]),
+                clip_out=max2,
+                noise_behind=noise,
+                after=("input",),
+            )
             for label in names.values()
         )
         outputs = {port: Output(label, values["z_out_ohm"], self.form) for port, label in names.items()}
-        return ActiveStage((Active("input", clip_in=max2), *each), {"in": Input("input", values["z_in_ohm"])}, outputs)
+        return ActiveStage(
+            (Active("input", clip_in=max2), *each), {"in": Input("input", values["z_in_ohm"])}, outputs
+        )
 
     def summary(self) -> str:
         return f"{self.build}, {self.ways} ways"
