@@ -1,0 +1,47 @@
+"""Blocks poured into pages: heads repeat, blocks stay whole, what is bound stays together."""
+
+from __future__ import annotations
+
+from app.sheets.flow import Block, pour
+from app.sheets.page import Text
+
+AREA = (10.0, 20.0, 200.0, 100.0)
+HEAD = Block(10.0, (Text(0.0, 8.0, "head"),))
+
+
+def named(name: str, height: float, **more: object) -> Block:
+    return Block(height, (Text(0.0, height - 2.0, name),), **more)  # type: ignore[arg-type]
+
+
+def texts(pages):
+    return [[item.text for item in page] for page in pages]
+
+
+def test_heads_repeat_and_blocks_stay_whole():
+    pages = pour([named(str(n), 40.0) for n in range(5)], HEAD, AREA)
+    assert texts(pages) == [["head", "0", "1"], ["head", "2", "3"], ["head", "4"]]
+
+
+def test_places_are_the_areas():
+    (page,) = pour([named("a", 40.0)], HEAD, AREA)
+    assert (page[0].x, page[0].y) == (10.0, 28.0)
+    assert (page[1].x, page[1].y) == (10.0, 20.0 + 10.0 + 38.0)
+
+
+def test_a_heading_goes_with_what_follows():
+    blocks = [named("a", 60.0), named("title", 20.0, keep=True), named("b", 20.0)]
+    assert texts(pour(blocks, HEAD, AREA)) == [["head", "a"], ["head", "title", "b"]]
+
+
+def test_a_block_taller_than_a_page_breaks_at_its_parts():
+    parts = tuple(named(f"part {n}", 30.0) for n in range(5))
+    tall = Block(150.0, parts=parts, again=named("again", 10.0))
+    assert texts(pour([named("a", 10.0), tall], HEAD, AREA)) == [
+        ["head", "a"],
+        ["head", "part 0", "part 1", "part 2"],
+        ["head", "again", "part 3", "part 4"],
+    ]
+
+
+def test_an_empty_sheet_is_one_page_with_its_head():
+    assert texts(pour([], HEAD, AREA)) == [["head"]]
