@@ -18,8 +18,8 @@ class AdConverter(Stage):
     """Volts in, full scale out. It clips at 0 dBFS."""
 
     title: ClassVar[str] = "A/D converter"
-    family: ClassVar[str] = "Digital"
-    order: ClassVar[int] = 10
+    family: ClassVar[str] = "Processing"
+    order: ClassVar[int] = 440
     help: ClassVar[str] = (
         "An input card or stage-box input behind its preamplifier: the level at 0 dBFS and its dynamic range."
     )

@@ -32,7 +32,7 @@ class Combiner(Stage):
 
     title: ClassVar[str] = "Combiner"
     family: ClassVar[str] = "Lines"
-    order: ClassVar[int] = 50
+    order: ClassVar[int] = 540
     help: ClassVar[str] = "Sums several lines. A passive one with two equal legs loses about 6 dB."
 
     kind: Literal["combiner"] = "combiner"

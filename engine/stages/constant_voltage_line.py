@@ -53,7 +53,7 @@ class ConstantVoltageLine(_Groups, Stage):
 
     title: ClassVar[str] = "Constant-voltage line"
     family: ClassVar[str] = "Outputs"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 630
     help: ClassVar[str] = (
         "Tapped loudspeakers on a 70.7 or 100 V line: the load, each group's power, the loss in cable and transformer."
     )

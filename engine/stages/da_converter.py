@@ -23,8 +23,8 @@ class DaConverter(Stage):
     """Full scale in, volts out, and an analogue range switch behind it where it has one."""
 
     title: ClassVar[str] = "D/A converter"
-    family: ClassVar[str] = "Digital"
-    order: ClassVar[int] = 20
+    family: ClassVar[str] = "Processing"
+    order: ClassVar[int] = 450
     domain: ClassVar[Domain] = Domain.DIGITAL
     help: ClassVar[str] = "An output card: the level at 0 dBFS, its dynamic range, its output impedance."
 

@@ -20,8 +20,8 @@ class DigitalLink(Stage):
     """A gain, then a sample format: fixed-point clips at full scale and has its word length's noise, floating-point neither."""
 
     title: ClassVar[str] = "Digital link"
-    family: ClassVar[str] = "Digital"
-    order: ClassVar[int] = 30
+    family: ClassVar[str] = "Processing"
+    order: ClassVar[int] = 460
     domain: ClassVar[Domain] = Domain.DIGITAL
     help: ClassVar[str] = (
         "What happens where one digital device hands over to the next: a trim, a word length, full scale."

@@ -23,7 +23,7 @@ class DigitalSource(Stage):
 
     title: ClassVar[str] = "Digital source"
     family: ClassVar[str] = "Sources"
-    order: ClassVar[int] = 30
+    order: ClassVar[int] = 130
     domain: ClassVar[Domain] = Domain.DIGITAL
     help: ClassVar[str] = "A player or network stream in digital form."
 

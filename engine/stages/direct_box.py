@@ -28,7 +28,7 @@ class DirectBox(Stage):
 
     title: ClassVar[str] = "Direct box, transformer"
     family: ClassVar[str] = "Inputs"
-    order: ClassVar[int] = 25
+    order: ClassVar[int] = 220
     help: ClassVar[str] = "Unbalanced to balanced, instrument to microphone level, or 1:1 isolation."
 
     kind: Literal["direct_box"] = "direct_box"

@@ -23,7 +23,7 @@ class DynamicsProcessor(Stage):
 
     title: ClassVar[str] = "Dynamics"
     family: ClassVar[str] = "Processing"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 420
     help: ClassVar[str] = (
         "Compressor: above the threshold the level rises by 1/ratio. Limiter: it does not rise at all."
     )

@@ -29,7 +29,7 @@ class Equaliser(Parametric, Stage):
 
     title: ClassVar[str] = "Equaliser"
     family: ClassVar[str] = "Processing"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 410
     help: ClassVar[str] = "Two shelves, four bells, high-pass and low-pass, and a graphic set if it has one."
 
     kind: Literal["equaliser"] = "equaliser"

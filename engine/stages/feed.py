@@ -22,7 +22,7 @@ class Feed(Stage):
 
     title: ClassVar[str] = "Feed"
     family: ClassVar[str] = "Places"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 720
     help: ClassVar[str] = "Where a send ends: what level it wants, what it takes, how quiet it is."
 
     kind: Literal["feed"] = "feed"

@@ -20,7 +20,7 @@ class LineCable(Stage):
 
     title: ClassVar[str] = "Line cable"
     family: ClassVar[str] = "Lines"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 520
     domain: ClassVar[Domain] = Domain.ANALOGUE
     help: ClassVar[str] = (
         "Its capacitance against the source impedance takes the top off long lines; its resistance costs next to nothing."

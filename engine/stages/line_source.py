@@ -34,7 +34,7 @@ class LineSource(Stage):
 
     title: ClassVar[str] = "Line source"
     family: ClassVar[str] = "Sources"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 120
     help: ClassVar[str] = (
         "A player, keyboard, laptop or radio receiver: nominal and largest output, and what it hisses."
     )

@@ -35,7 +35,7 @@ class Loudspeaker(Stage):
 
     title: ClassVar[str] = "Loudspeaker"
     family: ClassVar[str] = "Outputs"
-    order: ClassVar[int] = 30
+    order: ClassVar[int] = 640
     is_loudspeaker: ClassVar[bool] = True
     help: ClassVar[str] = (
         "Sensitivity, impedance and ratings. It has no clip point of its own: watts are judged against its ratings."

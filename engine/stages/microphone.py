@@ -24,7 +24,7 @@ class Microphone(Stage):
 
     title: ClassVar[str] = "Microphone"
     family: ClassVar[str] = "Inputs"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 210
     help: ClassVar[str] = (
         "Turns sound into a small voltage. With no self-noise given it has the thermal noise of its own impedance."
     )

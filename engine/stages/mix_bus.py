@@ -24,7 +24,7 @@ class MixBus(Stage):
 
     title: ClassVar[str] = "Mix bus"
     family: ClassVar[str] = "Mixing"
-    order: ClassVar[int] = 20
+    order: ClassVar[int] = 320
     help: ClassVar[str] = "The sum of channels or buses: a main mix, a group, an auxiliary send, a matrix."
 
     kind: Literal["mix_bus"] = "mix_bus"

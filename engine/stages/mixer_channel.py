@@ -31,7 +31,7 @@ class MixerChannel(Stage):
 
     title: ClassVar[str] = "Mixer channel"
     family: ClassVar[str] = "Mixing"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 310
     help: ClassVar[str] = "One channel strip at line level. A microphone goes through a preamplifier first."
 
     kind: Literal["mixer_channel"] = "mixer_channel"

@@ -40,7 +40,7 @@ class Pad(Stage):
 
     title: ClassVar[str] = "Pad"
     family: ClassVar[str] = "Lines"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 510
     domain: ClassVar[Domain] = Domain.ANALOGUE
     help: ClassVar[str] = (
         "A resistive attenuator in the line. It lowers level, clip point and noise ahead of it together."

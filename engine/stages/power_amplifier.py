@@ -29,7 +29,7 @@ class PowerAmplifier(Stage):
 
     title: ClassVar[str] = "Power amplifier"
     family: ClassVar[str] = "Outputs"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 610
     help: ClassVar[str] = (
         "One channel. Give two of rated power, voltage gain and input sensitivity; the third follows."
     )

@@ -24,7 +24,7 @@ class PoweredLoudspeaker(Stage):
 
     title: ClassVar[str] = "Powered loudspeaker"
     family: ClassVar[str] = "Outputs"
-    order: ClassVar[int] = 40
+    order: ClassVar[int] = 650
     help: ClassVar[str] = "Known by the input that drives it to its full level, that level, and its hiss."
 
     kind: Literal["powered_loudspeaker"] = "powered_loudspeaker"

@@ -28,7 +28,7 @@ class Preamplifier(Stage):
 
     title: ClassVar[str] = "Preamplifier"
     family: ClassVar[str] = "Inputs"
-    order: ClassVar[int] = 30
+    order: ClassVar[int] = 230
     help: ClassVar[str] = (
         "A microphone input with gain. Its EIN belongs to the highest gain; at low gain its residual output noise leads."
     )

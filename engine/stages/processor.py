@@ -62,7 +62,7 @@ class Processor(_Outputs, Parametric, Stage):
 
     title: ClassVar[str] = "Processor"
     family: ClassVar[str] = "Processing"
-    order: ClassVar[int] = 30
+    order: ClassVar[int] = 430
     help: ClassVar[str] = "A digital processor with one input and up to eight crossover outputs."
 
     kind: Literal["processor"] = "processor"

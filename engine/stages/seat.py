@@ -26,7 +26,7 @@ class Seat(Stage):
 
     title: ClassVar[str] = "Seat"
     family: ClassVar[str] = "Places"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 710
     domain: ClassVar[Domain] = Domain.ACOUSTIC
     is_seat: ClassVar[bool] = True
     help: ClassVar[str] = "A listening position. Each link from a loudspeaker holds its distance."

@@ -22,7 +22,7 @@ class SoundSource(Stage):
 
     title: ClassVar[str] = "Sound source"
     family: ClassVar[str] = "Sources"
-    order: ClassVar[int] = 10
+    order: ClassVar[int] = 110
     domain: ClassVar[Domain] = Domain.ACOUSTIC
     help: ClassVar[str] = "A talker, singer or instrument, by the sound pressure it makes."
 

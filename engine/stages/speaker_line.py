@@ -20,8 +20,8 @@ class SpeakerLine(Stage):
     """Loop resistance in series with the loudspeaker."""
 
     title: ClassVar[str] = "Speaker line"
-    family: ClassVar[str] = "Lines"
-    order: ClassVar[int] = 30
+    family: ClassVar[str] = "Outputs"
+    order: ClassVar[int] = 620
     domain: ClassVar[Domain] = Domain.ANALOGUE
     help: ClassVar[str] = "Its resistance costs level and damping: 0.3 dB is good, 1 dB noticeable."
 

@@ -33,7 +33,7 @@ class Splitter(Stage):
 
     title: ClassVar[str] = "Splitter"
     family: ClassVar[str] = "Lines"
-    order: ClassVar[int] = 40
+    order: ClassVar[int] = 530
     help: ClassVar[str] = (
         "One signal to several places. Passive splits share the source's current: each load lowers all the levels."
     )
