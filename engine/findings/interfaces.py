@@ -67,12 +67,12 @@ def unlike_level_standards(outcome: Outcome) -> Iterator[Finding]:
             message = (
                 f"{source.name} clips {-step:.1f} dB under what {target.name} takes: unlike level standards."
             )
-            mend = f"Expect about {-step:.0f} dB more gain at {target.name} (−10 dBV and +4 dBu differ by 11.8 dB); look for a level switch."
+            mend = f"Expect about {-step:.0f} dB more gain at {target.name} (−10 dBV and +4 dBu differ by 11.8 dB); look for a switch."
         else:
             message = (
                 f"{source.name} can send {step:.1f} dB more than {target.name} takes: unlike level standards."
             )
-            mend = f"Put a pad of {step:.0f} dB in the line, or limit what {source.name} sends: nominal levels that match still clip on peaks."
+            mend = f"Put a pad of {step:.0f} dB in the line, or limit what {source.name} sends: matching nominals still clip on peaks."
         yield Finding("note" if step < 0.0 else "mend", "unlike-levels", link.target, message, mend)
 
 

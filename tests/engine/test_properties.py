@@ -79,7 +79,7 @@ def test_a_unity_stage_changes_nothing(chain, place):
     if place == 0:
         return  # a source's own impedance is noisy: what stands behind it is its termination
     stiff = stages[place].with_fields(z_out_ohm=Figure(text="0.000001 ohm"))
-    unity = amplifier("unity", 0, 0.0, noise="0 V", z_in="1000000 M").with_fields(z_out_ohm=held)
+    unity = amplifier("unity", 0, 0.0, noise="0.000001 nV", z_in="1000000 M").with_fields(z_out_ohm=held)
     before = chained(stages)
     after = chained([*stages[:place], stiff, unity, *stages[place + 1 :]])
     one, two = evaluate(before), evaluate(after)
@@ -251,7 +251,7 @@ def test_unlike_sources_add_as_power(count, gain):
     """N equal sources of unlike programme into one sum: 10 log N over one of them, programme and noise alike."""
     stages: list[Stage] = [source(f"s{k}", z="1 uohm") for k in range(count)]
     stages += [amplifier(f"a{k}", 1, gain, z_in="1000 M") for k in range(count)]
-    stages.append(amplifier("sum", 2, 0.0, noise="0 V", z_in="1000 M"))
+    stages.append(amplifier("sum", 2, 0.0, noise="0.000001 nV", z_in="1000 M"))
     ends = [(f"s{k}", f"a{k}") for k in range(count)] + [(f"a{k}", "sum") for k in range(count)]
     outcome = evaluate(project(stages, *ends))
     for name in ("level", "noise", "peak"):
