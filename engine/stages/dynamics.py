@@ -9,13 +9,23 @@ import numpy as np
 from engine.bands import Axis
 from engine.figures import Figure
 from engine.sections import dynamics as curves
-from engine.sections.base import NEVER, Active, ActiveStage, Input, Output, StageSections
+from engine.sections.base import NEVER, Active, ActiveStage, Input, Number, Output, StageSections
 from engine.units import power_from_db, v2_from_dbu
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, option, switch
 from .declared import Values
-from .shared import Form, Signal, domain_of, form_option, marked_db, signal_option, stated_noise
+from .shared import (
+    ANALOGUE_ONLY,
+    Electrical,
+    Form,
+    Signal,
+    domain_of,
+    form_option,
+    marked_db,
+    signal_option,
+    stated_noise,
+)
 
 
 class DynamicsProcessor(Stage):
@@ -58,15 +68,18 @@ class DynamicsProcessor(Stage):
         choices=("rms", "peak"),
         help="What is held against the threshold: the programme's rms, or its sine-scaled peak.",
     )
-    threshold_db: Setting = control(
+    threshold_dbu: Setting = control(
+        "Threshold", "dBu", -50.0, 24.0, 0.5, 10.0, marking="number", help="The level from which on it acts."
+    )
+    threshold_dbfs: Setting = control(
         "Threshold",
-        "dBu or dBFS",
-        -50.0,
-        24.0,
+        "dBFS",
+        -60.0,
+        0.0,
         0.5,
-        10.0,
+        -14.0,
         marking="number",
-        help="In dBu, in a digital path in dBFS: the level from which on it acts.",
+        help="The level from which on it acts, in a digital path.",
     )
     ratio: Setting = control(
         "Ratio",
@@ -92,6 +105,10 @@ class DynamicsProcessor(Stage):
     )
 
     def in_use(self, name: str) -> bool:
+        if name in ("threshold_dbu", "threshold_dbfs"):
+            return name == ("threshold_dbfs" if self.signal == "digital" else "threshold_dbu")
+        if name in ANALOGUE_ONLY:
+            return self.signal == "analogue"
         return name != "ratio" or self.mode == "compressor"
 
     def inputs(self) -> tuple[Port, ...]:
@@ -101,13 +118,10 @@ class DynamicsProcessor(Stage):
         return (Port("out", domain_of(self.signal)),)
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
-        is_digital = self.signal == "digital"
-        max2 = np.asarray(values["max_v"]) ** 2
-        clip = NEVER if is_digital else max2
-        references = {"nominal": np.asarray(values["nominal_v"]) ** 2, "max": max2}
-        noise = 0.0 if is_digital else stated_noise(axis, values, "noise", references)
-        to_power = power_from_db if is_digital else v2_from_dbu
-        threshold, make_up = to_power(values["threshold_db"]), power_from_db(values["make_up_db"])
+        own = Electrical.of(values, "max_v")
+        noise = stated_noise(axis, values, "noise", own.references_v2)
+        make_up = power_from_db(values["make_up_db"])
+        threshold = self._threshold(values)
         if self.mode == "limiter" and self.detector == "peak":
             curve = curves.peak_limiter(threshold, values["inserted"])
             behind = np.where(np.asarray(values["inserted"]) > 0.5, make_up, 1.0)
@@ -117,15 +131,22 @@ class DynamicsProcessor(Stage):
             behind = np.ones(1)
         return ActiveStage(
             (
-                Active("detector", clip_in=clip, dynamics=curve),
-                Active("output", gain=behind, clip_out=clip, noise_behind=noise),
+                Active("detector", clip_in=own.clip_v2, dynamics=curve),
+                Active("output", gain=behind, clip_out=own.clip_v2, noise_behind=noise),
             ),
-            {"in": Input("detector", values["z_in_ohm"])},
-            {"out": Output("output", values["z_out_ohm"], self.form)},
+            {"in": Input("detector", own.z_in_ohm)},
+            {"out": Output("output", own.z_out_ohm, self.form)},
         )
+
+    def _threshold(self, values: Values) -> Number:
+        """In V², or in full scale²."""
+        if self.signal == "digital":
+            return np.asarray(power_from_db(values["threshold_dbfs"]))
+        return np.asarray(v2_from_dbu(values["threshold_dbu"]))
 
     def summary(self) -> str:
         if not self.inserted.value:
             return "bypassed"
         ratio = f", {self.ratio.value:g} : 1" if self.mode == "compressor" else ""
-        return f"{marked_db(self.threshold_db)}{ratio}"
+        at = (self.threshold_dbfs, "dBFS") if self.signal == "digital" else (self.threshold_dbu, "dBu")
+        return f"{marked_db(at[0], at[1])}{ratio}"

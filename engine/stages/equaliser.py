@@ -12,13 +12,24 @@ from engine.bands import BAND_MID_HZ, Axis
 from engine.figures import Figure
 from engine.sections import filters
 from engine.sections.attenuator import is_on, position_gain
-from engine.sections.base import NEVER, Active, ActiveStage, Input, Output, StageSections
+from engine.sections.base import Active, ActiveStage, Input, Output, StageSections
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, switch
 from .declared import Values
 from .parametric import Parametric
-from .shared import Form, Signal, domain_of, form_option, marked_db, numbered, signal_option, stated_noise
+from .shared import (
+    ANALOGUE_ONLY,
+    Electrical,
+    Form,
+    Signal,
+    domain_of,
+    form_option,
+    marked_db,
+    numbered,
+    signal_option,
+    stated_noise,
+)
 
 #: How many graphic gains may be given: their mid-frequencies and the bells' Q, so that neighbours meet at half their dB.
 GRAPHICS = {31: (BAND_MID_HZ, 4.318), 10: (BAND_MID_HZ[2::3], 1.414)}
@@ -58,6 +69,9 @@ class Equaliser(Parametric, Stage):
         "Level", "dB", -40.0, 12.0, 0.5, 0.0, help="Output level, behind the filters.", off_at_low=True
     )
 
+    def in_use(self, name: str) -> bool:
+        return name not in ANALOGUE_ONLY or self.signal == "analogue"
+
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal)),)
 
@@ -65,13 +79,9 @@ class Equaliser(Parametric, Stage):
         return (Port("out", domain_of(self.signal)),)
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
-        is_digital = self.signal == "digital"
-        clip = NEVER if is_digital else np.asarray(values["max_v"]) ** 2
-        references = {
-            "nominal": np.asarray(values["nominal_v"]) ** 2,
-            "max": np.asarray(values["max_v"]) ** 2,
-        }
-        noise = 0.0 if is_digital else stated_noise(axis, values, "noise", references)
+        own = Electrical.of(values, "max_v")
+        clip = own.clip_v2
+        noise = stated_noise(axis, values, "noise", own.references_v2)
         curve = self.equaliser(values, axis) * self._graphic(values, axis)
         return ActiveStage(
             (
@@ -84,8 +94,8 @@ class Equaliser(Parametric, Stage):
                 ),
                 Active("level", gain=position_gain(values["level_db"]), clip_out=clip),
             ),
-            {"in": Input("filters", values["z_in_ohm"])},
-            {"out": Output("level", values["z_out_ohm"], self.form)},
+            {"in": Input("filters", own.z_in_ohm)},
+            {"out": Output("level", own.z_out_ohm, self.form)},
         )
 
     def _graphic(self, values: Values, axis: Axis) -> NDArray[np.float64]:

@@ -9,12 +9,22 @@ import numpy as np
 from engine.bands import Axis
 from engine.figures import Figure
 from engine.sections.attenuator import is_on, position_gain
-from engine.sections.base import NEVER, Active, ActiveStage, Input, Output, StageSections
+from engine.sections.base import Active, ActiveStage, Input, Output, StageSections
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, option, switch
 from .declared import Values
-from .shared import Form, Signal, domain_of, form_option, marked_db, signal_option, stated_noise
+from .shared import (
+    ANALOGUE_ONLY,
+    Electrical,
+    Form,
+    Signal,
+    domain_of,
+    form_option,
+    marked_db,
+    signal_option,
+    stated_noise,
+)
 
 JOINS = {"by origin": "origin", "coherent": "coherent", "power": "power"}
 
@@ -89,6 +99,11 @@ class MixBus(Stage):
         "Mute", off="on air", on="muted", help="Muted, nothing passes but the output's own noise."
     )
 
+    def in_use(self, name: str) -> bool:
+        if name in ANALOGUE_ONLY:
+            return self.signal == "analogue"
+        return name != "meter_zero_dbfs" or self.signal == "digital"
+
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal), many=True),)
 
@@ -97,17 +112,15 @@ class MixBus(Stage):
         return (Port("out", domain), Port("before_fader", domain, "before fader", tap=True))
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
-        is_digital = self.signal == "digital"
-        max2 = np.asarray(values["max_output_v"]) ** 2
-        clip = NEVER if is_digital else max2
-        references = {"nominal": np.asarray(values["nominal_v"]) ** 2, "max": max2}
-        summing = 0.0 if is_digital else stated_noise(axis, values, "summing_noise", references)
-        residual = 0.0 if is_digital else stated_noise(axis, values, "residual", references)
+        own = Electrical.of(values, "max_output_v")
+        clip, z_out = own.clip_v2, own.z_out_ohm
+        summing = stated_noise(axis, values, "summing_noise", own.references_v2)
+        residual = stated_noise(axis, values, "residual", own.references_v2)
         gain = position_gain(values["fader_db"]) * np.where(is_on(values["mute"]), 0.0, 1.0)
         return ActiveStage(
             (Active("sum", clip_out=clip, noise_behind=summing), Active("fader", gain=gain, clip_out=clip, noise_behind=residual)),
-            {"in": Input("sum", values["z_in_ohm"])},
-            {"out": Output("fader", values["z_out_ohm"], self.form), "before_fader": Output("sum", values["z_out_ohm"], self.form)},
+            {"in": Input("sum", own.z_in_ohm)},
+            {"out": Output("fader", z_out, self.form), "before_fader": Output("sum", z_out, self.form)},
             join=JOINS[self.adds],
         )  # fmt: skip
 

@@ -10,13 +10,13 @@ from engine.bands import Axis
 from engine.figures import Figure
 from engine.sections import filters
 from engine.sections.attenuator import is_on, position_gain
-from engine.sections.base import NEVER, Active, ActiveStage, Input, Output, StageSections
+from engine.sections.base import Active, ActiveStage, Input, Output, StageSections
 
 from .base import Port, Stage
 from .declare import Setting, control, figure, switch
 from .declared import Values
 from .parametric import boost, corner, sharpness
-from .shared import Signal, domain_of, marked_db, signal_option, stated_noise
+from .shared import ANALOGUE_ONLY, Electrical, Signal, domain_of, marked_db, signal_option, stated_noise
 
 TAPS = (
     ("before_equaliser", "trim"),
@@ -97,6 +97,9 @@ class MixerChannel(Stage):
         "Mute", off="on air", on="muted", help="Muted, nothing passes; sends taken ahead of it still do."
     )
 
+    def in_use(self, name: str) -> bool:
+        return name not in ANALOGUE_ONLY or self.signal == "analogue"
+
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", domain_of(self.signal)),)
 
@@ -106,11 +109,9 @@ class MixerChannel(Stage):
         return (Port("out", domain), *taps)
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
-        is_digital = self.signal == "digital"
-        max2, f_hz = np.asarray(values["max_v"]) ** 2, axis.f_hz
-        clip = NEVER if is_digital else max2
-        references = {"nominal": np.asarray(values["nominal_v"]) ** 2, "max": max2}
-        noise = 0.0 if is_digital else stated_noise(axis, values, "noise", references)
+        own = Electrical.of(values, "max_v")
+        clip, z_out, f_hz = own.clip_v2, own.z_out_ohm, axis.f_hz
+        noise = stated_noise(axis, values, "noise", own.references_v2)
         curve = np.where(
             is_on(values["low_cut"]), filters.butterworth_high_pass(f_hz, values["low_cut_hz"], 3), 1.0
         )
@@ -123,10 +124,9 @@ class MixerChannel(Stage):
             Active("fader", gain=position_gain(values["fader_db"]), clip_out=clip),
             Active("mute", gain=np.where(is_on(values["mute"]), 0.0, 1.0)),
         )
-        z_out = values["z_out_ohm"]
         taps = {name: Output(section, z_out) for name, section in TAPS}
         return ActiveStage(
-            sections, {"in": Input("trim", values["z_in_ohm"])}, {"out": Output("mute", z_out), **taps}
+            sections, {"in": Input("trim", own.z_in_ohm)}, {"out": Output("mute", z_out), **taps}
         )
 
     def summary(self) -> str:

@@ -52,5 +52,6 @@ def _named(ranged: ControlRange, setting: Setting) -> str:
 def _number(spec: ControlSpec, ranged: ControlRange, value: float) -> str:
     step = f"{ranged.step:.6f}".rstrip("0")
     places = max(len(step.split(".")[1]), 1 if spec.unit.startswith("dB") else 0)
-    sign = "+" if value > 0.0 and spec.unit.startswith("dB") else ""
-    return f"{sign}{format_db(value, spec.unit, places)}"
+    text = format_db(value, spec.unit, places)
+    is_unsigned = value > 0.0 and spec.unit.startswith("dB") and not text.startswith("+")
+    return f"+{text}" if is_unsigned else text

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field
 from typing import Any, Literal
 
 import numpy as np
@@ -10,7 +11,7 @@ from numpy.typing import NDArray
 
 from engine.bands import WEIGHTINGS, Axis
 from engine.figures import Figure, format_db
-from engine.sections.base import Domain, Emission, Number
+from engine.sections.base import NEVER, Domain, Emission, Number
 from engine.sections.noise import ein_without_source, noise_total, white_total
 from engine.spectra import SPECTRA, band_shares
 from engine.units import SINE_CREST_DB, T_20C_K, power_from_db
@@ -74,6 +75,41 @@ def emission(
     return Emission(axis.spread(shares) * power, power_from_db(crest - SINE_CREST_DB))
 
 
+#: Figures of a stage that a digital one has no use for.
+ANALOGUE_ONLY = frozenset(
+    {
+        "max_v",
+        "max_output_v",
+        "noise",
+        "summing_noise",
+        "residual",
+        "nominal_v",
+        "meter_zero_v",
+        "z_in_ohm",
+        "z_out_ohm",
+    }
+)
+
+
+@dataclass(frozen=True)
+class Electrical:
+    """What a stage that may be digital has as an analogue one: clip point, what its noise refers to, impedances."""
+
+    clip_v2: Number = NEVER
+    references_v2: Mapping[str, Number] = field(default_factory=dict)
+    z_in_ohm: Number = NEVER
+    z_out_ohm: Number = 0.0
+
+    @classmethod
+    def of(cls, values: Values, largest: str) -> Electrical:
+        """Read from the figures in use; `largest` names the maximum level. A digital stage has none of them."""
+        if largest not in values:
+            return cls()
+        max2 = np.asarray(values[largest], dtype=float) ** 2
+        nominal2 = np.asarray(values["nominal_v"], dtype=float) ** 2
+        return cls(max2, {"nominal": nominal2, "max": max2}, values["z_in_ohm"], values["z_out_ohm"])
+
+
 def numbered(values: Values, name: str) -> list[Number]:
     """The amounts of a figure given several times."""
     found: list[Number] = []
@@ -119,12 +155,12 @@ def drop_choices(full: str, drops: Sequence[Figure]) -> tuple[tuple[str, float],
     )
 
 
-def marked_db(setting: Setting) -> str:
+def marked_db(setting: Setting, unit: str = "dB") -> str:
     """Where a control in dB stands, for a block's second line."""
     if setting.value is None:
         return "off"
-    sign = "+" if setting.value > 0.0 else ""
-    return f"{sign}{format_db(setting.value)}"
+    text = format_db(setting.value, unit)
+    return f"+{text}" if setting.value > 0.0 and not text.startswith("+") else text
 
 
 def at_room_temperature(values: Values) -> Values:
