@@ -16,6 +16,7 @@ from typing import TYPE_CHECKING, Any, NamedTuple
 from app import words
 
 if TYPE_CHECKING:
+    from engine.findings import Finding
     from engine.levels import NodeLevels
     from engine.loudspeaker import LoudspeakerLoad
     from engine.outcome import Outcome
@@ -143,14 +144,27 @@ def node_table(outcome: Outcome) -> list[list[str]]:
     """Every node as people read it, under a row of headings."""
     rows = [["node", *(column.heading for column in NODE_COLUMNS)]]
     rows += [
-        [place(outcome.project, node), *(column.text(node) for column in NODE_COLUMNS)] for node in outcome.nodes
+        [place(outcome.project, node), *(column.text(node) for column in NODE_COLUMNS)]
+        for node in outcome.nodes
     ]
     return rows
 
 
 def seat_table(outcome: Outcome) -> list[list[str]]:
     """Every seat as people read it, under a row of headings."""
-    rows = [["seat", "dB SPL", "dB(A)", "peak", "target", "off target", "hiss dB(A)", "under the room", "who owns the hiss"]]
+    rows = [
+        [
+            "seat",
+            "dB SPL",
+            "dB(A)",
+            "peak",
+            "target",
+            "off target",
+            "hiss dB(A)",
+            "under the room",
+            "who owns the hiss",
+        ]
+    ]
     for seat in outcome.seats:
         first = seat.budget[0] if seat.budget else None
         owner = f"{first.name}, {first.origin}: {words.share(first.share)}" if first else words.NOTHING
@@ -173,11 +187,22 @@ def loudspeaker_table(outcome: Outcome) -> list[list[str]]:
     return rows
 
 
+def grouped(findings: Sequence[Finding]) -> list[list[Finding]]:
+    """Findings of one severity, code and mend together, so that what to do is said once; otherwise in their order."""
+    groups: dict[tuple[str, str, str], list[Finding]] = {}
+    for each in findings:
+        groups.setdefault((each.severity, each.code, each.mend), []).append(each)
+    return list(groups.values())
+
+
 def aligned(rows: Sequence[Sequence[str]], left: int = 1) -> str:
     """Rows as text in columns: the first `left` to the left, the others to the right, a row of headings above."""
     widths = [max(len(row[at]) for row in rows) for at in range(len(rows[0]))]
     lines = []
     for row in rows:
-        cells = [text.ljust(wide) if at < left else text.rjust(wide) for at, (text, wide) in enumerate(zip(row, widths, strict=True))]
+        cells = [
+            text.ljust(wide) if at < left else text.rjust(wide)
+            for at, (text, wide) in enumerate(zip(row, widths, strict=True))
+        ]
         lines.append("  ".join(cells).rstrip())
     return "\n".join(lines)

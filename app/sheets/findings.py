@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from app import tabular
 from app.cautions import CAUTIONS
@@ -10,12 +10,14 @@ from engine.findings import Finding
 from engine.outcome import Outcome
 
 from . import faces
-from .flow import Block, pour
+from .flow import Block, pour, stacked
 from .frame import body_area
 from .grid import Column, Grid, heading, paragraph
-from .page import BODY, HAIR, LARGE, Box, Item, Line, Page, Paper, Text
+from .page import BODY, HAIR, LARGE, SMALL, Box, Line, Page, Paper, Text
 
-_SEVERITY_WIDTH = 40.0
+_BOX_WIDTH = 20.0
+_TEXT_LEFT = 60.0
+_MANY = 6  # findings alike above which they are set small
 _SEATS = (
     Column("seat", 84.0, 2.0),
     Column("dB SPL", 34.0, align="right"),
@@ -43,7 +45,7 @@ def pages(outcome: Outcome, paper: Paper) -> list[Page]:
     counts = ", ".join(
         f"{sum(each.severity == severity for each in found)} {severity}" for severity in ("stop", "mend", "note")
     )
-    blocks = [*_findings(outcome, area[2]), *_seats(outcome, area[2]), *_loudspeakers(outcome, area[2]), *_cautions(area[2])]
+    blocks = [*_findings(outcome, area[2]), *_seats(outcome, area[2]), *_loudspeakers(outcome, area[2]), _cautions(area[2])]
     return [
         Page(paper, "Findings and cautions", f"What was noticed: {counts}", tuple(items))
         for items in pour(blocks, Block(0.0), area)
@@ -54,22 +56,33 @@ def _findings(outcome: Outcome, width: float) -> Iterator[Block]:
     yield heading("Findings", width, LARGE)
     if not outcome.findings:
         yield paragraph("Nothing to mend.", width)
-    yield from (_finding(each, width) for each in outcome.findings)
+    for group in tabular.grouped(outcome.findings):
+        yield from _group(group, width)
 
 
-def _finding(finding: Finding, width: float) -> Block:
-    """A box to tick, the severity as a word, what was noticed, and how to mend it."""
-    left = 20.0 + _SEVERITY_WIDTH
-    leading = BODY + 3.5
-    message = faces.wrapped(finding.message, BODY, width - left, True)
-    mend = faces.wrapped(finding.mend, BODY, width - left)
-    items: list[Item] = [Box(1.0, 4.0, 11.0, 11.0), Text(20.0, 13.0, finding.severity, BODY, finding.severity == "stop")]
-    items += [
-        Text(left, 13.0 + leading * place, line, BODY, place < len(message))
-        for place, line in enumerate((*message, *mend))
-    ]
-    height = 9.0 + leading * (len(message) + len(mend))
-    return Block(height, (*items, Line(0.0, height - 1.0, width, height - 1.0, HAIR)))
+def _group(group: Sequence[Finding], width: float) -> list[Block]:
+    """The severity as a word, what was noticed, how to mend it; a box to tick unless it is only a note.
+
+    A large group is set small, and may break over pages.
+    """
+    severity, mend = group[0].severity, group[0].mend
+    points = SMALL if len(group) > _MANY else BODY
+    leading = points + 3.5
+    room = width - _TEXT_LEFT
+    parts: list[Block] = []
+    for finding in group:
+        lines = faces.wrapped(finding.message, points, room, points == BODY)
+        texts = [Text(_TEXT_LEFT, points + leading * at, line, points, points == BODY) for at, line in enumerate(lines)]
+        box = [] if severity == "note" else [Box(1.0, 0.5, 10.0, 10.0)]
+        parts.append(Block(leading * len(lines), (*box, *texts)))
+    first = Text(_BOX_WIDTH, float(BODY), severity, BODY, severity == "stop")
+    parts[0] = Block(parts[0].height, (first, *parts[0].items))
+    advice = faces.wrapped(mend, BODY, room)
+    texts = [Text(_TEXT_LEFT, BODY + (BODY + 3.5) * at, line) for at, line in enumerate(advice)]
+    end = (BODY + 3.5) * len(advice) + 4.0
+    parts.append(Block(end, (*texts, Line(0.0, end - 1.0, width, end - 1.0, HAIR))))
+    parts = [Block(4.0, keep=True), *parts]
+    return parts if len(group) > _MANY else [stacked(parts)]
 
 
 def _seats(outcome: Outcome, width: float) -> Iterator[Block]:
@@ -90,6 +103,9 @@ def _table(title: str, grid: Grid, rows: list[list[str]]) -> Iterator[Block]:
     yield from (grid.row(row) for row in rows)
 
 
-def _cautions(width: float) -> Iterator[Block]:
-    yield heading("Cautions", width, LARGE)
-    yield from (paragraph(caution.text, width, title=caution.about) for caution in CAUTIONS)
+def _cautions(width: float) -> Block:
+    """All cautions together, on one page where the paper allows it."""
+    parts = [heading("Cautions", width, LARGE)]
+    parts += [paragraph(caution.text, width, title=caution.about) for caution in CAUTIONS]
+    whole = stacked(parts)
+    return Block(whole.height, whole.items, parts=tuple(parts))

@@ -15,15 +15,16 @@ from .settings_lines import SettingLine, StageSettings, by_rack, in_signal_order
 
 _ROW = 23.0
 _NEXT_PANEL_LINE = 17.0
+_NEXT_LINE = 12.0
 _TICK = 12.0
 _COLUMNS = (
-    Column("done", 20.0),
-    Column("stage and its place", 108.0, 2.0),
-    Column("control", 72.0, 1.0),
-    Column("set to, as marked on the panel", 146.0, 1.5),
-    Column("state", 52.0),
-    Column("as found", 44.0, 2.0),
-    Column("as left", 44.0, 2.0),
+    Column("done", 18.0),
+    Column("stage and its place", 96.0, 2.0),
+    Column("control", 90.0, 0.7),
+    Column("set to, as marked on the panel", 134.0, 1.5),
+    Column("state", 50.0),
+    Column("as found", 42.0, 2.0),
+    Column("as left", 42.0, 2.0),
 )
 
 
@@ -90,10 +91,11 @@ def _line(grid: Grid, line: SettingLine) -> Block:
     """One control: a box to tick, its name, its panel's words large, the same in its unit, and two boxes to write in."""
     room = grid.widths[3] - (faces.width(line.value, BODY) + 12.0 if line.value else 0.0)
     panel = faces.wrapped(line.panel, LARGE, room, True) or [""]
-    height = _ROW + _NEXT_PANEL_LINE * (len(panel) - 1)
+    control = faces.wrapped(line.control, BODY, grid.widths[2])
+    height = _ROW + max(_NEXT_PANEL_LINE * (len(panel) - 1), _NEXT_LINE * (len(control) - 1))
     items: list[Item] = [
         Box(grid.lefts[0] + 1.0, 5.0, _TICK, _TICK),
-        grid.cell(2, 15.0, line.control),
+        *(grid.cell(2, 15.0 + _NEXT_LINE * at, text) for at, text in enumerate(control)),
         *(Text(grid.lefts[3], 16.0 + _NEXT_PANEL_LINE * at, text, LARGE, True) for at, text in enumerate(panel)),
         grid.cell(4, 15.0, line.state, BODY, line.state == "locked"),
         Box(grid.lefts[5], 3.0, grid.widths[5], height - 5.0, HAIR),

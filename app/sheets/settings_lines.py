@@ -59,10 +59,9 @@ def rack_of(place: str) -> str:
 
 
 def stage_settings(stage: Stage) -> StageSettings:
-    """One stage's controls as lines."""
-    lines = tuple(
-        setting_line(spec, stage.control_range(name), setting) for name, spec, setting in stage.controls()
-    )
+    """One stage's controls as lines; a switch with one position only is nothing to set."""
+    controls = ((spec, stage.control_range(name), setting) for name, spec, setting in stage.controls())
+    lines = tuple(setting_line(*each) for each in controls if len(each[1].choices) != 1)
     return StageSettings(stage.id, stage.name, (stage.rack or "").strip(), stage.count, lines)
 
 

@@ -119,10 +119,10 @@ def clipping(tmp_path):
     from engine.store import write
 
     project = read(MEETING_ROOM)[0]
-    sources = [stage for stage in project.stages if not stage.inputs() and "spl" in type(stage).figure_specs()]
+    sources = [stage for stage in project.stages if not stage.inputs() and "level_spl" in type(stage).figure_specs()]
     assert sources, "the meeting room has people talking"
     changes = {
-        stage.id: (stage, stage.with_fields(spl=stage.spl.model_copy(update={"text": "140 dB SPL"})))  # type: ignore[attr-defined]
+        stage.id: (stage, stage.with_fields(level_spl=stage.level_spl.model_copy(update={"text": "140 dB SPL"})))  # type: ignore[attr-defined]
         for stage in sources
     }
     path = tmp_path / "loud.gainwright"
