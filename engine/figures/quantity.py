@@ -283,6 +283,17 @@ _ALL = (
         above_low=True,
     ),
     Quantity(
+        "absorption",
+        "Absorption area",
+        "m²",
+        "250 m²",
+        {"m²": 1.0, "m2": 1.0, "ft²": FOOT_M**2, "ft2": FOOT_M**2},
+        low=0.0,
+        high=1e6,
+        bare="m²",
+        above_low=True,
+    ),  # fmt: skip
+    Quantity(
         "ambient",
         "Room noise",
         "dB",

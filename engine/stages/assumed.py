@@ -44,6 +44,10 @@ _UNSAID: Mapping[tuple[str, str], tuple[Alternative, ...]] = {
         Alternative("with 200 ohm", numbers={"source_ohm": 200.0}),
         Alternative("with a short circuit", numbers={"source_ohm": 0.0}),
     ),
+    ("voltage_at_frequency", "frequency_hz"): (
+        Alternative("at 20 Hz", numbers={"frequency_hz": 20.0}),
+        Alternative("at 50 Hz", numbers={"frequency_hz": 50.0}),
+    ),
     ("resistance_per_length", "reference"): (
         Alternative("both conductors", tags={"reference": "loop"}),
         Alternative("one conductor", tags={"reference": "one-way"}),

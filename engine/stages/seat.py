@@ -47,7 +47,7 @@ class Seat(Stage):
     rt60_s: Figure | None = figure("Reverberation time", "time", "1 s", help="RT60 of the occupied room.")
     room_constant_m2: Figure | None = figure(
         "Room constant",
-        "room_constant",
+        "absorption",
         help="Where known it stands in for volume and reverberation time [m²].",
     )
     role: Literal["reference", "nearest", "other"] = option(
