@@ -9,6 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from .bands import Axis
 from .graph import Graph
@@ -72,7 +73,7 @@ def find_margins(graph: Graph, rows: Rows, solution: Solution, axis: Axis, sum_k
     usable = np.minimum(forward, backward)
     if graph.beyond_of.size:
         usable[graph.beyond_of] = np.minimum.reduceat(usable[graph.beyond_rows], graph.beyond_starts, axis=0)
-    return Margins(at_in, at_out, usable, _carried(graph, rows))
+    return Margins(at_in, at_out, usable, _carried(graph, rows, peak))
 
 
 def _margin_db(clip: Array, peak: Array) -> Array:
@@ -83,8 +84,12 @@ def _margin_db(clip: Array, peak: Array) -> Array:
     return np.where(live, 10.0 * margin, np.inf)
 
 
-def _carried(graph: Graph, rows: Rows) -> Array:
-    """Clip levels at row outputs: a section's own, or the one ahead of it times the gain at the test tone."""
+def _carried(graph: Graph, rows: Rows, peak: Array) -> Array:
+    """Clip levels at row outputs: a section's own, or the one ahead of it times the gain at the test tone.
+
+    At a join it is the level there when the first of the branches clips: a quiet branch that clips low takes nothing
+    from a loud one. Where nothing sounds it is the lowest of the branches' clip levels.
+    """
     gain = rows.gain[:, :, -1]
     carried = np.full(rows.clip_out.shape, np.inf)
     is_pair = np.zeros(graph.size, dtype=bool)
@@ -98,6 +103,15 @@ def _carried(graph: Graph, rows: Rows) -> Array:
             carried[at][is_pair[at]] = np.inf
         at = rank.joins
         if at.stop > at.start:
-            carried[at] = np.minimum.reduceat(carried[rank.join_parents], rank.join_starts, axis=0)
+            carried[at] = _at_join(carried[rank.join_parents], peak[rank.join_parents], peak[at], rank.join_starts)
             carried[at][is_pair[at]] = np.inf
     return carried
+
+
+def _at_join(carried: Array, peak: Array, together: Array, starts: NDArray[np.intp]) -> Array:
+    """Clip levels of joins [join, batch] from those of their branches and the peaks of branches and joins."""
+    room = np.full(carried.shape, np.inf)
+    np.divide(carried, peak, out=room, where=peak > 0.0)
+    rise = np.minimum.reduceat(room, starts, axis=0)
+    lowest = np.minimum.reduceat(carried, starts, axis=0)
+    return np.where(np.isfinite(rise), rise * together, lowest)
