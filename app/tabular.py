@@ -94,13 +94,14 @@ def _numbers(source: object, names: Sequence[str]) -> dict[str, float | None]:
 
 
 def place(project: Project, node: NodeLevels) -> str:
-    """What a node is called: "Amplifier A input"; by its port where the stage has several: "Processor, to fills"."""
+    """What a node is called: "Amplifier A input"; by its port where there are several: "Processor, output 2"."""
     stage = project.stage[node.stage]
-    ports = stage.inputs() if node.direction == "in" else stage.outputs()
-    if len(ports) < 2:
+    ports = {port.name: port for port in (stage.inputs() if node.direction == "in" else stage.outputs())}
+    port = ports[node.port]
+    alone = not port.tap and sum(not each.tap for each in ports.values()) == 1
+    if alone:
         return f"{node.name} {'input' if node.direction == 'in' else 'output'}"
-    label = next((port.label for port in ports if port.name == node.port), "")
-    return f"{node.name}, {label or node.port}"
+    return f"{node.name}, {port.label or port.name.replace('_', ' ')}"
 
 
 class Column(NamedTuple):

@@ -32,12 +32,12 @@ class Grid:
     widths: tuple[float, ...]
 
     @classmethod
-    def over(cls, width: float, columns: Sequence[Column]) -> Grid:
+    def over(cls, width: float, columns: Sequence[Column], gap: float = GAP) -> Grid:
         """The columns over `width` points: each has its least, and what is left over goes by `grow`."""
-        spare = width - sum(column.least for column in columns) - GAP * (len(columns) - 1)
+        spare = width - sum(column.least for column in columns) - gap * (len(columns) - 1)
         shares = sum(column.grow for column in columns) or 1.0
         widths = [column.least + spare * column.grow / shares for column in columns]
-        lefts = [sum(widths[:place]) + GAP * place for place in range(len(widths))]
+        lefts = [sum(widths[:place]) + gap * place for place in range(len(widths))]
         return cls(tuple(columns), tuple(lefts), tuple(widths))
 
     @property

@@ -47,7 +47,7 @@ def _inputs(venue: Venue) -> None:
         spectrum = "speech" if key in ("lectern", "celebrant", "choir", "singers") else "pink"
         add("sound_source", key, name, 0, row, count=count, level_spl=level, crest_db=crest, spectrum=spectrum, area="platform")
         add("microphone", f"{key}_mic", f"{name} microphone", 1, row, count=count, **MICROPHONES[microphone])
-        add("preamplifier", f"{key}_pre", f"{name} input", 2, row, count=count, rack=f"Stage box, inputs {1 + 4 * row} up",
+        add("preamplifier", f"{key}_pre", f"{name} preamp", 2, row, count=count, rack=f"Stage box, inputs {1 + 4 * row} up",
             gain_db=gain, pad=(0, "locked"))  # fmt: skip
         add("mixer_channel", f"{key}_ch", f"{name} channel", 3, row, count=count, rack=MIXER, fader_db=(fader, "operator"),
             trim_db=-6 if key == "drums" else 0, low_cut=(0 if key in ("piano", "drums") else 1, "locked"))  # fmt: skip

@@ -32,8 +32,8 @@ def build() -> Project:
         max_spl="126 dB SPL", z_ohm="150 ohm", form="impedance-balanced")  # fmt: skip
 
     mixer = f"{RACK}, unit 4"
-    add("preamplifier", "lectern_pre", "Lectern input", 2, 0, rack=mixer, gain_db=46, pad=(0, "locked"))
-    add("preamplifier", "table_pre", "Table inputs", 2, 1, count=4, rack=mixer, gain_db=49, pad=(0, "locked"))
+    add("preamplifier", "lectern_pre", "Lectern preamp", 2, 0, rack=mixer, gain_db=46, pad=(0, "locked"))
+    add("preamplifier", "table_pre", "Table preamps", 2, 1, count=4, rack=mixer, gain_db=49, pad=(0, "locked"))
     channel = {"rack": mixer, "low_cut": (1, "locked")}
     add("mixer_channel", "lectern_ch", "Lectern channel", 3, 0, fader_db=(0, "operator"), **channel)
     add("mixer_channel", "table_ch", "Table channels", 3, 1, count=4, fader_db=(-8, "operator"), **channel)

@@ -76,7 +76,7 @@ def _microphones(venue: Venue) -> None:
         venue.add("sound_source", key, name, 0, row, count=count, level_spl=level, crest_db=crest, spectrum=spectrum)
         venue.add("microphone", f"{key}_mic", f"{name} microphone", 1, row, count=count, **figures)
         venue.add("line_cable", f"{key}_cable", f"{name} multicore", 2, row, count=count, length_m="45 m")
-        venue.add("preamplifier", f"{key}_pre", f"{name} input", 3, row, count=count, rack=f"{DESK}, input cards",
+        venue.add("preamplifier", f"{key}_pre", f"{name} preamp", 3, row, count=count, rack=f"{DESK}, input cards",
                   gain_db=gain, pad=(0, "locked"))  # fmt: skip
         venue.chain(key, f"{key}_mic", f"{key}_cable", f"{key}_pre")
         _channel(venue, key, name, row, count, -1 if key == "drums" else 0, fader, group)
