@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import date
 
 from app.cautions import CAUTION_LINE, CONVENTION_LINE
@@ -37,7 +37,7 @@ def body_area(paper: Paper) -> tuple[float, float, float, float]:
 def framed(pages: Sequence[Page], stamp: Stamp) -> tuple[Page, ...]:
     """Every page in its frame, numbered page n of m."""
     return tuple(
-        page.with_items((*_title_block(page, stamp, place + 1, len(pages)), *_foot(page.paper)))
+        replace(page, items=(*_title_block(page, stamp, place + 1, len(pages)), *page.items, *_foot(page.paper)))
         for place, page in enumerate(pages)
     )
 

@@ -100,10 +100,6 @@ class Page:
     about: str
     items: tuple[Item, ...] = field(default=())
 
-    def with_items(self, more: Iterable[Item]) -> Page:
-        """The page with more on it."""
-        return replace(self, items=(*self.items, *more))
-
     @property
     def texts(self) -> tuple[str, ...]:
         """All that is written on it by the sheets themselves, in the order it was set down."""

@@ -43,10 +43,12 @@ def build(source: Path, target: Path, style: str) -> None:
     swaps = tabular(font)
     for table in font["cmap"].tables:
         table.cmap = {code: swaps.get(glyph, glyph) for code, glyph in table.cmap.items()}
+        # Without a tab of its own Qt takes the space for one, and every space of a PDF would be read back as a tab.
+        table.cmap[0x09] = table.cmap[0x2003]
     options = subset.Options(layout_features=["kern", "mark", "mkmk", "ccmp"], notdef_outline=True)
     options.name_IDs = [0, 1, 2, 3, 4, 5, 6, 13, 14, 16, 17]
     subsetter = subset.Subsetter(options)
-    subsetter.populate(unicodes=[code for low, high in RANGES for code in range(low, high + 1)])
+    subsetter.populate(unicodes=[0x09, *(code for low, high in RANGES for code in range(low, high + 1))])
     subsetter.subset(font)
     full, postscript = f"{FAMILY} {style}", f"{FAMILY.replace(' ', '')}-{style}"
     legacy = (FAMILY, "Regular") if style == "Regular" else (full, "Regular")
