@@ -79,6 +79,7 @@ class Document(QObject):
         self._outcome = evaluate(self._project)
         self._tried: Outcome | None = None
         self._gesture_number = 0
+        self._gesture_open = False
         self.undo_stack = QUndoStack(self)
         self._frame = QTimer(self, singleShot=True, interval=FRAME_MS)
         self._frame.timeout.connect(self._solve)
@@ -109,6 +110,11 @@ class Document(QObject):
         """Whether the project differs from the saved one."""
         return self._modified
 
+    @property
+    def gesture_open(self) -> bool:
+        """Whether a hand is moving something: scales keep still until it lets go."""
+        return self._gesture_open
+
     # -- changing --------------------------------------------------------------------------------------------
     def edit(self, title: str, changes: Changes, gesture: object | None = None) -> bool:
         """Change the project; says whether anything changed.
@@ -125,6 +131,7 @@ class Document(QObject):
         result = self._project.with_changes(changes)
         if any(before is None or after is None for before, after in changes.values()):
             self._tried = evaluate(result)  # a ring of passive stages shows only here
+        self._gesture_open = gesture is not None
         token = None if gesture is None else (gesture, self._gesture_number)
         self.undo_stack.push(Edit(self, title, changes, token))
         return True
@@ -132,7 +139,11 @@ class Document(QObject):
     def end_gesture(self) -> None:
         """The hand lets go: what follows is an undo entry of its own, and the last value is solved now."""
         self._gesture_number += 1
-        self.flush()
+        was_open, self._gesture_open = self._gesture_open, False
+        if self._frame.isActive():
+            self.flush()
+        elif was_open:
+            self.solved.emit(self._outcome)  # views that kept still while the hand moved may settle now
 
     def undo(self) -> None:
         """Take the last edit back."""
@@ -190,13 +201,15 @@ class Document(QObject):
     def load(self, project: Project, path: Path | None, saved: Project | None = None) -> None:
         """Put another project in place of this one, with nothing to undo.
 
-        `saved` is what the file holds where `project` is newer: recovered work.
+        `saved` is what the file holds where `project` is newer: recovered work. Raises ValueError for a ring of
+        passive stages; then the document is as it was.
         """
+        tried = evaluate(project)
         if path is not None:
             path = path.absolute()
         self._fingerprint = fingerprint(path)
         self._path, self._saved = path, saved or project
-        self._tried = None
+        self._tried = tried
         self._gesture_number += 1
         self.undo_stack.clear()
         self.select(())

@@ -123,7 +123,8 @@ def _hiss_margin(plan: Plan, solution: Solution, seat: Stage) -> tuple[float | N
     if ambient is None or not hiss > 0.0:
         return None, None
     bands = plan.axis.bands(solution.spectra[row, NOISE, 0])
-    return hiss_margin(ambient, bands, 10.0 * np.log10(hiss / ZERO), 10.0 * np.log10(hiss_a / ZERO))
+    margin, band = hiss_margin(ambient, bands, 10.0 * np.log10(hiss / ZERO), 10.0 * np.log10(hiss_a / ZERO))
+    return float(margin), band
 
 
 def _bounds(

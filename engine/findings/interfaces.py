@@ -13,7 +13,7 @@ from .registry import Finding, finder
 if TYPE_CHECKING:
     from engine.outcome import Outcome
 
-STARVED_DB = 3.0  # S/N a stage's own noise may cost before it is said
+STARVED_DB = 6.0  # S/N a stage's own noise may cost before it is said
 LINE_CLIP_DBU = 0.0  # an output that clips above this is at line level
 UNLIKE_DB = 10.0  # -10 dBV against +4 dBu is 11.8 dB
 HEAVY_DB = 1.0
@@ -21,7 +21,7 @@ HEAVY_DB = 1.0
 
 @finder
 def starved_input(outcome: Outcome) -> Iterator[Finding]:
-    """Stages whose own noise costs more than 3 dB of S/N: their input is fed too little."""
+    """Stages whose own noise costs more than 6 dB of S/N: their input is fed too little."""
     for key, answer in outcome.plan.answers.items():
         if not isinstance(answer, ActiveStage) or not answer.inputs or not answer.outputs:
             continue
