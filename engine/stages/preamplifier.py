@@ -8,7 +8,7 @@ from typing import ClassVar, Literal
 import numpy as np
 
 from engine.bands import Axis
-from engine.figures import Figure
+from engine.figures import Figure, format_db
 from engine.sections.attenuator import is_on
 from engine.sections.base import Active, ActiveStage, Domain, Input, Number, Output, StageSections
 from engine.sections.curves import noise_over_gain
@@ -143,7 +143,7 @@ class Preamplifier(Stage):
                 below = float(dbu_from_v2(np.max(least @ axis.flat_weight)))
                 yield (
                     f"EIN of {self.name} is {typed.text}: {float(np.max(source_ohm)):g} ohm alone make "
-                    f"{below:.1f} dBu of thermal noise, and no amplifier is quieter than its source"
+                    f"{format_db(below, 'dBu')} of thermal noise, and no amplifier is quieter than its source"
                 )
         if np.any(np.asarray(values["gain_min_db"]) > np.asarray(values["gain_max_db"])):
             yield f"Lowest gain of {self.name} ({self.gain_min_db.text}) is above its highest ({self.gain_max_db.text})"
