@@ -134,6 +134,11 @@ class Outcome:
                     best = Narrowest(
                         stage, self.project.stage[stage].name, section.name, side, float(own[row])
                     )
+        for stage, row in self.plan.half_driven():
+            if np.isfinite(own[row]) and (best is None or own[row] < best.margin_db):
+                best = Narrowest(
+                    stage, self.project.stage[stage].name, "output, one leg", "out", float(own[row])
+                )
         return best
 
     @cached_property

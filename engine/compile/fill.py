@@ -177,8 +177,21 @@ def _clip_behind_link(
         return NEVER
     answer = answers[stage]
     assert isinstance(answer, ActiveStage)
-    section = next(s for s in answer.sections if s.name == answer.outputs[port].section)
-    return np.asarray(_per_setting(section.clip_out) * gain[:, TONE] * scale)
+    return np.asarray(_own_clip(answer, answer.outputs[port].section) * gain[:, TONE] * scale)
+
+
+def _own_clip(answer: ActiveStage, output: str) -> Array | float:
+    """A stage's clip point at one of its sections' outputs: its own, or that of a section ahead times the gain behind it."""
+    by_name = {section.name: section for section in answer.sections}
+    before = dict(zip([*by_name][1:], by_name, strict=False))
+    section = by_name[output]
+    own = np.asarray(_per_setting(section.clip_out))
+    ahead = section.after[0] if section.after else before.get(output)
+    carried = np.minimum(_per_setting(section.clip_in), NEVER if ahead is None else _own_clip(answer, ahead))
+    gain = np.asarray(section.gain)
+    at_tone = gain[..., TONE] if gain.ndim and gain.shape[-1] > 1 else _per_setting(gain)
+    behind = np.where(np.asarray(at_tone) > 0.0, np.where(np.isfinite(carried), carried, 0.0) * at_tone, NEVER)
+    return np.asarray(np.where(np.isfinite(own), own, np.where(np.isfinite(carried), behind, NEVER)))
 
 
 def fill_arrivals(

@@ -85,6 +85,13 @@ class Plan:
         """Where an output's open-circuit level stands, ahead of its own impedance."""
         return int(self.place[self.layout.open_rows[stage, port]])
 
+    def half_driven(self) -> Iterable[tuple[str, int]]:
+        """Outputs whose wiring lowers their clip point: the stage, and the row behind the link."""
+        for net in self.layout.nets:
+            for node in net.shape.clip_scale:
+                for index, (stage, _port, _) in enumerate(net.shape.drivers):
+                    yield stage, int(self.place[net.by_driver[index, node]])
+
     def arrival_row(self, link: str) -> int:
         """Where one acoustic link's share of its stage's input stands."""
         return int(self.place[self.layout.arrival_rows[link]])
