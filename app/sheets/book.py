@@ -11,7 +11,7 @@ from types import MappingProxyType
 from engine.outcome import Outcome
 from engine.store import digest
 
-from . import findings, levels, settings
+from . import findings, levels, nodes, settings
 from .frame import Stamp, framed
 from .page import Page, Paper
 from .paint import Progress, write_pdf
@@ -24,6 +24,7 @@ SHEETS: Mapping[str, Maker] = MappingProxyType(
         "diagram": levels.pages,
         "settings": lambda outcome, paper: settings.signal_order_pages(outcome.project, paper),
         "racks": lambda outcome, paper: settings.rack_order_pages(outcome.project, paper),
+        "levels": nodes.pages,
         "findings": findings.pages,
     }
 )
