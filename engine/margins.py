@@ -114,4 +114,5 @@ def _at_join(carried: Array, peak: Array, together: Array, starts: NDArray[np.in
     np.divide(carried, peak, out=room, where=peak > 0.0)
     rise = np.minimum.reduceat(room, starts, axis=0)
     lowest = np.minimum.reduceat(carried, starts, axis=0)
-    return np.where(np.isfinite(rise), rise * together, lowest)
+    finite = np.isfinite(rise)  # nowhere, where nothing sounds
+    return np.where(finite, np.where(finite, rise, 0.0) * together, lowest)
