@@ -31,8 +31,9 @@ class Surface(Protocol):
     @property
     def project(self) -> Project: ...
 
-    def hit(self, x: float, y: float, *, reach: float = 6.0) -> Hit:
-        """What lies there; ports and links are found within `reach` px."""
+    def hit(self, x: float, y: float, *, reach: float = 6.0, carrying: bool = False) -> Hit:
+        """What lies there; ports and links are found within `reach` px. What carries a block means the link between
+        two blocks sooner than their ports."""
 
     def place(self, x: float, y: float) -> Place:
         """The grid place there."""

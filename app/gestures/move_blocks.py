@@ -32,7 +32,7 @@ class MoveBlocks(Gesture):
 
     def _target(self, x: float, y: float) -> Target:
         """A link that does not touch the carried block, when only one is carried."""
-        hit = self.surface.hit(x, y, reach=8.0)
+        hit = self.surface.hit(x, y, reach=8.0, carrying=True)
         if hit.what != "link" or len(self.ids) != 1:
             return Target("place")
         link = self.surface.project.link[hit.id]
@@ -56,7 +56,10 @@ class MoveBlocks(Gesture):
 
     def _hint(self, target: Target) -> str:
         if target.what != "link":
-            return ""
+            others = (
+                len({ghost.id for ghost in self._ghosts(self.plan.changes)} - self.ids) if self.plan else 0
+            )
+            return f"{others} more move on" if others > 1 else "One more moves on" if others else ""
         project = self.surface.project
         link = project.link[target.id]
         return f"Between {project.stage[link.source].name} and {project.stage[link.target].name}"

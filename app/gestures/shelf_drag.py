@@ -20,7 +20,7 @@ class ShelfDrag(Gesture):
         self._at: tuple[Target, Place] | None = None
 
     def move(self, x: float, y: float) -> None:
-        hit = self.surface.hit(x, y, reach=LINK_REACH_PX)
+        hit = self.surface.hit(x, y, reach=LINK_REACH_PX, carrying=True)
         place = self.surface.place(x, y)
         target = _target(hit, self.surface)
         if self._at == (target, place):
@@ -28,6 +28,7 @@ class ShelfDrag(Gesture):
         self._at = (target, place)
         changes, refusal = attempt(lambda: self._changes(target, place))
         title = KINDS[self.kind].title
+        refusal = refusal.replace(edits.Draft(self.surface.project).fresh_name(title), title)
         new = edits.added_stages(changes)
         self.plan = Plan(_title(target, title), changes, new) if changes else None
         self.preview = Preview(target, _ghosts(changes), refusal, _hint(target, title, self.surface))

@@ -57,6 +57,11 @@ class Layout:
         """How many rows are in use."""
         return max((stage.row for stage in self.project.stages), default=-1) + 1
 
+    @property
+    def columns_used(self) -> int:
+        """How many columns are in use."""
+        return max((stage.column for stage in self.project.stages), default=-1) + 1
+
     # -- where things stand ----------------------------------------------------------------------------------
     def cell(self, column: int, row: int) -> Box:
         """The block that stands, or would stand, on a place."""
@@ -83,6 +88,24 @@ class Layout:
             for port in side:
                 yield port, is_output, self.port(key, port.name, is_output=is_output)
 
+    def linked(self, key: str) -> frozenset[tuple[bool, str]]:
+        """Which of a stage's ports have links: whether an output, its name."""
+        return self._linked.get(key, frozenset())
+
+    @cached_property
+    def _linked(self) -> Mapping[str, frozenset[tuple[bool, str]]]:
+        found: dict[str, set[tuple[bool, str]]] = {}
+        for link in self.project.links:
+            found.setdefault(link.source, set()).add((True, link.output))
+            found.setdefault(link.target, set()).add((False, link.input))
+        return {key: frozenset(ends) for key, ends in found.items()}
+
+    def keep_ways_of(self, other: Layout) -> None:
+        """Take over what was worked out for a project with the same places, ports and links."""
+        for known in ("routes", "at", "_linked"):
+            if known in other.__dict__:
+                self.__dict__[known] = other.__dict__[known]
+
     def line(self, link: Link) -> tuple[Point, ...]:
         """A link's corners from its output to its input."""
         start = self.port(link.source, link.output, is_output=True)
@@ -99,6 +122,14 @@ class Layout:
         last = self._across(route.last_gap, route.last_lane.share)
         return start, (first, start[1]), (first, level), (last, level), (last, end[1]), end
 
+    def middle_of_line(self, link: Link) -> Point:
+        """The middle of a link's longest run."""
+        runs = itertools.pairwise(self.line(link))
+        (ax, ay), (bx, by) = max(
+            runs, key=lambda run: abs(run[1][0] - run[0][0]) + abs(run[1][1] - run[0][1])
+        )
+        return (ax + bx) / 2.0, (ay + by) / 2.0
+
     def _across(self, gap: int, share: float) -> float:
         left, right = self.columns.x_out(gap), self.columns.x_in(gap + 1)
         return left + (right - left) * share
@@ -110,19 +141,37 @@ class Layout:
         origin = (self.columns.x_in(0) + self.columns.x_out(0)) / 2.0
         return max(0, round((x - origin) / pitch)), self.scale.row_at(y + self.top_px)
 
-    def hit(self, x: float, y: float, *, reach: float = 6.0) -> Hit:
-        """What lies at a point: a port within reach, else a block, else a link within reach."""
+    def hit(self, x: float, y: float, *, reach: float = 6.0, carrying: bool = False) -> Hit:
+        """What lies at a point: a port within reach, else a block, else a link within reach.
+
+        For a hand that carries a block, ports matter only where a side has several, or no link leads there.
+        """
         column, row = self.place(x, y)
         near = [self.at[place] for place in _around(column, row) if place in self.at]
-        if self.scale.detail != "bare":
-            port = self._port_near(near, x, y, reach)
-            if port is not None:
-                return port
-        for key in near:
-            left, top, width, height = self.box(key)
-            if left <= x <= left + width and top <= y <= top + height:
-                return Hit("stage", key, right=x >= left + width / 2.0)
-        return self._link_near(x, y, reach)
+        stage = next((hit for key in near if (hit := self._block_at(key, x, y))), None)
+        if self.scale.detail == "bare":
+            return stage or self._link_near(x, y, reach)
+        port = self._port_near(near, x, y, reach)
+        if carrying:
+            if stage is not None:
+                return (
+                    port
+                    if port is not None and port.id == stage.id and self._is_one_of_several(port)
+                    else stage
+                )
+            link = self._link_near(x, y, reach)
+            return link if link.what == "link" else port or link
+        return port or stage or self._link_near(x, y, reach)
+
+    def _block_at(self, key: str, x: float, y: float) -> Hit | None:
+        left, top, width, height = self.box(key)
+        if left <= x <= left + width and top <= y <= top + height:
+            return Hit("stage", key, right=x >= left + width / 2.0)
+        return None
+
+    def _is_one_of_several(self, hit: Hit) -> bool:
+        stage = self.project.stage[hit.id]
+        return len(stage.outputs() if hit.what == "output" else stage.inputs()) > 1
 
     def _port_near(self, near: list[str], x: float, y: float, reach: float) -> Hit | None:
         """The nearest port; on its own block it reaches less far, so that the block can be grabbed."""
