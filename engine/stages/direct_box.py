@@ -22,8 +22,8 @@ from .shared import Form, form_option, stated_noise
 class DirectBox(Stage):
     """Steps a line down to microphone level, or isolates it. A transformer's largest level falls 6 dB per octave.
 
-    The core saturates by flux, which is voltage over frequency: L_max(f) = L_max(f0) + 20 log10(f / f0) below f0, and
-    no higher above it.
+    The core saturates by flux, which is voltage over frequency: L_max(f) = L_max(f0) + 20 log10(f / f0), so a level
+    given at a low frequency leaves far more room above it.
     """
 
     title: ClassVar[str] = "Direct box, transformer"
@@ -79,7 +79,7 @@ class DirectBox(Stage):
         padded = np.where(is_on(values["pad"]), power_from_db(values.get("pad_db", 0.0)), 1.0)
         max2 = np.asarray(values["max_level_v"]) ** 2
         rated_hz = np.asarray(values.get("max_level_v.frequency_hz", 20.0))
-        flux = np.maximum(1.0, (rated_hz / axis.f_hz) ** 2)
+        flux = (rated_hz / axis.f_hz) ** 2
         own = thermal(axis, values["z_out_ohm"], values["temperature_k"])
         box = Active(
             "box", gain=power_from_db(-np.asarray(values["loss_db"])) / padded, clip_in=max2 * padded,
