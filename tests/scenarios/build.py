@@ -37,6 +37,8 @@ def stage(kind: str, id: str, **fields: Any) -> Stage:
             given[name] = Setting(value=None if value is None else float(value))
         elif name in maker.figure_specs() and isinstance(value, str):
             given[name] = Figure(text=value, origin="sheet")
+            if maker.figure_specs()[name].many:
+                given[name] = (given[name],)
         elif name in maker.figure_specs() and isinstance(value, list):
             given[name] = tuple(Figure(text=text, origin="sheet") for text in value)
         else:
@@ -51,7 +53,9 @@ def bare(kind: str, id: str, **fields: Any) -> Stage:
     return stage(kind, id, **{**ends, **fields})
 
 
-def line(id: str = "source", level: str = "+4 dBu", *, crest: str = "12 dB", most: str = "+40 dBu", **fields: Any) -> Stage:
+def line(
+    id: str = "source", level: str = "+4 dBu", *, crest: str = "12 dB", most: str = "+40 dBu", **fields: Any
+) -> Stage:
     """A line-level source of some level and crest factor."""
     quiet = {"nominal_v": level, "max_output_v": most, "crest_db": crest, "noise": SILENT, "lower_by_db": []}
     return bare("line_source", id, **{**quiet, **fields})

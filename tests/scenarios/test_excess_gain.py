@@ -6,7 +6,19 @@ import pytest
 
 from engine.outcome import Outcome, evaluate
 from engine.units import v_from_dbu
-from tests.scenarios.build import DB, SHARE, SILENT, TENTH, amplifier, bare, line, loudspeaker, moved, seat, solved
+from tests.scenarios.build import (
+    DB,
+    SHARE,
+    SILENT,
+    TENTH,
+    amplifier,
+    bare,
+    line,
+    loudspeaker,
+    moved,
+    seat,
+    solved,
+)
 
 
 def hissing_system(**amp: float) -> Outcome:
@@ -14,7 +26,9 @@ def hissing_system(**amp: float) -> Outcome:
     return solved(
         line(level="1 V", crest="3.01 dB"),
         bare("mix_bus", "mixer", max_output_v="10 V", residual="-86 dBu unweighted"),
-        bare("processor", "processor", input_range_db="199 dB unweighted", output_range_db="110 dB unweighted"),
+        bare(
+            "processor", "processor", input_range_db="199 dB unweighted", output_range_db="110 dB unweighted"
+        ),
         amplifier(sensitivity_v="1.0 V", noise="103 dB re rated unweighted", **amp),
         loudspeaker(sensitivity_spl="98 dB 1 W/1 m"),
         seat(),
@@ -35,7 +49,9 @@ def test_s01_how_far_down_do_the_amplifiers_go():
     assert v_from_dbu(before.node("amp", "out").clip) == pytest.approx(63.25, rel=SHARE)
     assert excess_db(before) == pytest.approx(20.0, abs=DB)
     assert before.node("amp", "in").noise == pytest.approx(-82.99, abs=DB)
-    assert before.node("amp", "out").noise == pytest.approx(-46.90, abs=DB)  # −46.97 from upstream, and its own
+    assert before.node("amp", "out").noise == pytest.approx(
+        -46.90, abs=DB
+    )  # −46.97 from upstream, and its own
     assert before.seats[0].hiss == pytest.approx(30.31, abs=DB)
     after = moved(before, "amp", attenuator_db=-20.0)
     assert excess_db(after) == pytest.approx(0.0, abs=DB)
@@ -94,7 +110,11 @@ def quiet_choice(pad: str | None = None, gain: str | None = None, **at: dict[str
 CHOICES = {
     "ride the console low": (quiet_choice, {"console": {"fader_db": -20.0}}, 41.0),
     "processor digital trim": (quiet_choice, {"processor": {"trim_1_db": -20.0}}, 35.7),
-    "26 dB amplifier and digital trim": (quiet_choice, {"gain": "26 dB", "processor": {"trim_1_db": -11.76}}, 28.6),
+    "26 dB amplifier and digital trim": (
+        quiet_choice,
+        {"gain": "26 dB", "processor": {"trim_1_db": -11.76}},
+        28.6,
+    ),
     "26 dB amplifier and pad": (quiet_choice, {"gain": "26 dB", "pad": "11.76 dB"}, 23.7),
     "pad": (quiet_choice, {"pad": "20 dB"}, 23.7),
     "amplifier knob": (quiet_choice, {"amp": {"attenuator_db": -20.0}}, 23.7),
@@ -119,7 +139,9 @@ def test_s02_the_excess_and_the_noise_at_the_amplifier():
     digital = quiet_choice(processor={"trim_1_db": -20.0})
     assert digital.node("amp", "in").noise == pytest.approx(-85.89, abs=DB)
     assert quiet_choice(pad="20 dB").node("amp", "in").noise == pytest.approx(-100.46, abs=DB)
-    assert quiet_choice(gain="26 dB", processor={"trim_1_db": -11.76}).node("amp", "in").noise == pytest.approx(-85.31, abs=DB)
+    assert quiet_choice(gain="26 dB", processor={"trim_1_db": -11.76}).node(
+        "amp", "in"
+    ).noise == pytest.approx(-85.31, abs=DB)
 
 
 def test_s02_the_knob_needs_an_input_stage_that_takes_it():
