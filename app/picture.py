@@ -6,7 +6,7 @@ For paper and for files, where no path view stands above and nothing can be poin
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
@@ -15,6 +15,7 @@ from PySide6.QtGui import QFontMetricsF, QPainter, QPainterPath, QPen, QPolygonF
 from app.diagram.geometry import Geometry, Look, Request, build
 from app.diagram.paint import LABEL_PX, STROKES, paint
 from app.inks import Inks, font
+from engine.levels import NodeLevels
 from engine.outcome import Outcome
 from engine.sections.base import Domain
 from engine.stages import Stage
@@ -57,7 +58,7 @@ class Picture:
     path: Sequence[str]
     width: float
     height: float
-    look: Look = Look()
+    look: Look | None = None
 
     @cached_property
     def columns(self) -> PathColumns:
@@ -67,11 +68,12 @@ class Picture:
     def geometry(self) -> Geometry:
         """The diagram's geometry; its y counts from `top`."""
         seat = next((seat for seat in self.outcome.seats if seat.stage == self.path[-1]), None)
+        tight = tightest(self.outcome, self.path)
         return build(
             Request(
                 trace=self.outcome.trace(self.path), column_of={key: at for at, key in enumerate(self.path)},
                 columns=self.columns, width=self.width, height=self.height - self.top - KEY_PX, text_width=text_width,
-                look=self.look, seat=seat, left_px=LEFT_PX, right_px=RIGHT_PX,
+                look=replace(self.look or Look(), narrowest=tight.stage if tight else None), seat=seat, left_px=LEFT_PX, right_px=RIGHT_PX,
             )
         )  # fmt: skip
 
@@ -101,7 +103,9 @@ class Picture:
     def _strip_px(self) -> float:
         """Height of the blocks with the stages' names."""
         if self.is_turned:
-            return max((text_width(line, False) for lines in self._names for line in lines), default=0.0) + 16.0
+            return (
+                max((text_width(line, False) for lines in self._names for line in lines), default=0.0) + 16.0
+            )
         return max((len(lines) for lines in self._names), default=1) * LEADING_PX + 12.0
 
     def paint(self, painter: QPainter, inks: Inks) -> None:
@@ -164,8 +168,17 @@ class Picture:
             x += 32.0 + text_width(name, False) + 20.0
 
     def _shown(self) -> Iterator[tuple[str, str]]:
-        drawn = {series for series, spans in self.geometry.spans.items() if spans} | {bar for _, bar in self.geometry.bars}
+        drawn = {series for series, spans in self.geometry.spans.items() if spans} | {
+            bar for _, bar in self.geometry.bars
+        }
         return ((series, name) for series, name in KEY if series in drawn)
+
+
+def tightest(outcome: Outcome, path: Sequence[str]) -> NodeLevels | None:
+    """The node of a path with the least peak margin."""
+    trace = outcome.trace(path)
+    known = [(node.peak_margin, at) for at, node in enumerate(trace) if node.peak_margin is not None]
+    return trace[min(known)[1]] if known else None
 
 
 def text_width(text: str, strong: bool) -> float:
@@ -195,7 +208,12 @@ def _outline(stage: Stage, box: QRectF) -> QPainterPath:
         path.addRoundedRect(box, radius, radius)
     elif Domain.DIGITAL in domains:
         cut = min(8.0, box.width() / 3.0)
-        corners = [QPointF(box.right() - cut, box.top()), QPointF(box.right(), box.top() + cut), box.bottomRight(), box.bottomLeft()]
+        corners = [
+            QPointF(box.right() - cut, box.top()),
+            QPointF(box.right(), box.top() + cut),
+            box.bottomRight(),
+            box.bottomLeft(),
+        ]
         path.addPolygon(QPolygonF([box.topLeft(), *corners]))
         path.closeSubpath()
     else:

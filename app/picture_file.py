@@ -20,7 +20,12 @@ _PDF_DOTS_PER_INCH = 1200
 
 
 def write_picture(
-    target: Path, outcome: Outcome, path: Sequence[str], size: tuple[int, int], inks: Inks, look: Look | None = None
+    target: Path,
+    outcome: Outcome,
+    path: Sequence[str],
+    size: tuple[int, int],
+    inks: Inks,
+    look: Look | None = None,
 ) -> None:
     """Write the diagram of one path, `size` px (in SVG and PDF 96 px an inch), under a line that names it.
 
@@ -30,7 +35,7 @@ def write_picture(
     title = f"{header.name}, revision {header.revision}"
     about = f"{stages[path[0]].name} to {stages[path[-1]].name}"
     width, height = size
-    picture = Picture(outcome, path, width - 2.0 * EDGE_PX, height - 2.0 * EDGE_PX - TITLE_PX, look or Look())
+    picture = Picture(outcome, path, width - 2.0 * EDGE_PX, height - 2.0 * EDGE_PX - TITLE_PX, look)
 
     def draw(painter: QPainter) -> None:
         painter.fillRect(QRectF(0.0, 0.0, width, height), inks.paper)

@@ -22,10 +22,16 @@ SCHEMES = ("light", "dark", "red", "print")
 def run(argv: Sequence[str]) -> int:
     """Write the diagram; status 0, or 2 where something cannot be read or written."""
     arguments = Arguments("diagram", "Write the level diagram of one path as PNG, SVG or PDF.")
-    arguments.add_argument("-o", "--output", metavar="OUT", type=Path, required=True, help="ends in .png, .svg or .pdf")
-    arguments.add_argument("--path", metavar="STAGE", help="the path through this stage, by name or id; else the first one")
+    arguments.add_argument(
+        "-o", "--output", metavar="OUT", type=Path, required=True, help="ends in .png, .svg or .pdf"
+    )
+    arguments.add_argument(
+        "--path", metavar="STAGE", help="the path through this stage, by name or id; else the first one"
+    )
     arguments.add_argument("--scheme", choices=SCHEMES, default="light")
-    arguments.add_argument("--size", metavar="WxH", type=size, default=USUAL_SIZE, help="in pixels, 1400x700 if not given")
+    arguments.add_argument(
+        "--size", metavar="WxH", type=size, default=USUAL_SIZE, help="in pixels, 1400x700 if not given"
+    )
     given = arguments.parse_args(argv)
 
     from app.inks import DARK, LIGHT, PRINT, RED
@@ -50,10 +56,14 @@ def size(text: str) -> tuple[int, int]:
     """A width and height as typed: "1400x700"."""
     found = re.fullmatch(r"(\d+)\s*[x×X]\s*(\d+)", text.strip())
     if not found:
-        raise argparse.ArgumentTypeError(f"{text!r} is no size: give width and height in pixels, such as 1400x700")
+        raise argparse.ArgumentTypeError(
+            f"{text!r} is no size: give width and height in pixels, such as 1400x700"
+        )
     wide, high = int(found[1]), int(found[2])
     if not (LEAST_PX <= wide <= MOST_PX and LEAST_PX <= high <= MOST_PX):
-        raise argparse.ArgumentTypeError(f"{text!r} is no size for a diagram: from {LEAST_PX} to {MOST_PX} pixels each way")
+        raise argparse.ArgumentTypeError(
+            f"{text!r} is no size for a diagram: from {LEAST_PX} to {MOST_PX} pixels each way"
+        )
     return wide, high
 
 
@@ -66,7 +76,11 @@ def path_named(outcome: Outcome, stage: str | None) -> Sequence[str]:
         seats = [seat.stage for seat in outcome.seats]
         ends = [path for path in outcome.paths() if path[-1] in seats] or list(outcome.paths())
         return ends[0] if ends else outcome.path_through(stages[0].id)
-    found = [each.id for each in stages if each.id == stage] or [each.id for each in stages if each.name.casefold() == stage.casefold()]
+    found = [each.id for each in stages if each.id == stage] or [
+        each.id for each in stages if each.name.casefold() == stage.casefold()
+    ]
     if not found:
-        raise CommandError(f"there is no stage {stage!r}: the stages are {', '.join(each.name for each in stages)}")
+        raise CommandError(
+            f"there is no stage {stage!r}: the stages are {', '.join(each.name for each in stages)}"
+        )
     return outcome.path_through(found[0])

@@ -18,12 +18,18 @@ def run(argv: Sequence[str]) -> int:
     from .painting import application
 
     arguments = Arguments("sheet", "Write the sheets for the crew as a vector PDF.")
-    arguments.add_argument("-o", "--output", metavar="OUT.pdf", type=Path, required=True, help="the PDF to write")
+    arguments.add_argument(
+        "-o", "--output", metavar="OUT.pdf", type=Path, required=True, help="the PDF to write"
+    )
     arguments.add_argument("--paper", choices=tuple(PAPERS), default="A4")
     arguments.add_argument("--landscape", action="store_true", help="lay the paper on its long side")
-    arguments.add_argument("--only", metavar="NAMES", help=f"some of the sheets, with commas between: {','.join(SHEETS)}")
+    arguments.add_argument(
+        "--only", metavar="NAMES", help=f"some of the sheets, with commas between: {','.join(SHEETS)}"
+    )
     given = arguments.parse_args(argv)
-    names = [name.strip() for name in given.only.split(",") if name.strip()] if given.only is not None else None
+    names = (
+        [name.strip() for name in given.only.split(",") if name.strip()] if given.only is not None else None
+    )
     outcome = read_outcome(given.file)
     drawing_with = application()
     try:

@@ -21,10 +21,14 @@ def run(argv: Sequence[str]) -> int:
     form = arguments.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="one JSON object, numbers unrounded")
     form.add_argument("--csv", action="store_true", help="one line per node, numbers unrounded")
-    arguments.add_argument("--tone", metavar="HZ", type=frequency_hz, help="levels of a test tone at this frequency")
+    arguments.add_argument(
+        "--tone", metavar="HZ", type=frequency_hz, help="levels of a test tone at this frequency"
+    )
     given = arguments.parse_args(argv)
     outcome = read_outcome(given.file, given.tone)
-    text = tabular.to_json(outcome) if given.json else tabular.to_csv(outcome) if given.csv else _text(outcome)
+    text = (
+        tabular.to_json(outcome) if given.json else tabular.to_csv(outcome) if given.csv else _text(outcome)
+    )
     sys.stdout.write(text.rstrip("\n") + "\n")
     sys.stdout.flush()
     return 0

@@ -47,7 +47,9 @@ def wrapped(text: str, points: int, limit: float, strong: bool = False) -> list[
 def _pieces(word: str, points: int, limit: float, strong: bool) -> list[str]:
     pieces: list[str] = []
     while len(word) > 1 and width(word, points, strong) > limit:
-        fits = next(n for n in range(len(word) - 1, 0, -1) if n == 1 or width(word[:n], points, strong) <= limit)
+        fits = next(
+            n for n in range(len(word) - 1, 0, -1) if n == 1 or width(word[:n], points, strong) <= limit
+        )
         pieces.append(word[:fits])
         word = word[fits:]
     return [*pieces, word]

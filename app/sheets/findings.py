@@ -43,9 +43,15 @@ def pages(outcome: Outcome, paper: Paper) -> list[Page]:
     area = body_area(paper)
     found = outcome.findings
     counts = ", ".join(
-        f"{sum(each.severity == severity for each in found)} {severity}" for severity in ("stop", "mend", "note")
+        f"{sum(each.severity == severity for each in found)} {severity}"
+        for severity in ("stop", "mend", "note")
     )
-    blocks = [*_findings(outcome, area[2]), *_seats(outcome, area[2]), *_loudspeakers(outcome, area[2]), _cautions(area[2])]
+    blocks = [
+        *_findings(outcome, area[2]),
+        *_seats(outcome, area[2]),
+        *_loudspeakers(outcome, area[2]),
+        _cautions(area[2]),
+    ]
     return [
         Page(paper, "Findings and cautions", f"What was noticed: {counts}", tuple(items))
         for items in pour(blocks, Block(0.0), area)
@@ -72,7 +78,10 @@ def _group(group: Sequence[Finding], width: float) -> list[Block]:
     parts: list[Block] = []
     for finding in group:
         lines = faces.wrapped(finding.message, points, room, points == BODY)
-        texts = [Text(_TEXT_LEFT, points + leading * at, line, points, points == BODY) for at, line in enumerate(lines)]
+        texts = [
+            Text(_TEXT_LEFT, points + leading * at, line, points, points == BODY)
+            for at, line in enumerate(lines)
+        ]
         box = [] if severity == "note" else [Box(1.0, 0.5, 10.0, 10.0)]
         parts.append(Block(leading * len(lines), (*box, *texts)))
     first = Text(_BOX_WIDTH, float(BODY), severity, BODY, severity == "stop")
@@ -92,7 +101,9 @@ def _seats(outcome: Outcome, width: float) -> Iterator[Block]:
 
 def _loudspeakers(outcome: Outcome, width: float) -> Iterator[Block]:
     if outcome.loudspeakers:
-        yield from _table("Loudspeakers", Grid.over(width, _LOUDSPEAKERS), tabular.loudspeaker_table(outcome)[1:])
+        yield from _table(
+            "Loudspeakers", Grid.over(width, _LOUDSPEAKERS), tabular.loudspeaker_table(outcome)[1:]
+        )
 
 
 def _table(title: str, grid: Grid, rows: list[list[str]]) -> Iterator[Block]:

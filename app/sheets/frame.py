@@ -37,7 +37,9 @@ def body_area(paper: Paper) -> tuple[float, float, float, float]:
 def framed(pages: Sequence[Page], stamp: Stamp) -> tuple[Page, ...]:
     """Every page in its frame, numbered page n of m."""
     return tuple(
-        replace(page, items=(*_title_block(page, stamp, place + 1, len(pages)), *page.items, *_foot(page.paper)))
+        replace(
+            page, items=(*_title_block(page, stamp, place + 1, len(pages)), *page.items, *_foot(page.paper))
+        )
         for place, page in enumerate(pages)
     )
 
@@ -56,7 +58,11 @@ def _title_block(page: Page, stamp: Stamp, place: int, pages: int) -> list[Item]
         Text(left, top + 37.0, about, BODY),
         Text(right, top + 37.0, count, BODY, False, "right"),
     ]
-    return [*items, *_fields(stamp, left, top + 58.0, width), Line(left, top + _HEAD, right, top + _HEAD, HAIR)]
+    return [
+        *items,
+        *_fields(stamp, left, top + 58.0, width),
+        Line(left, top + _HEAD, right, top + _HEAD, HAIR),
+    ]
 
 
 def _fields(stamp: Stamp, left: float, baseline: float, width: float) -> list[Item]:

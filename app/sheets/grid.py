@@ -46,7 +46,9 @@ class Grid:
 
     def head(self) -> Block:
         """The headings over a rule."""
-        items: list[Item] = [self.cell(at, 9.0, column.heading, SMALL) for at, column in enumerate(self.columns)]
+        items: list[Item] = [
+            self.cell(at, 9.0, column.heading, SMALL) for at, column in enumerate(self.columns)
+        ]
         return Block(16.0, (*items, Line(0.0, 13.0, self.width, 13.0, RULE)))
 
     def cell(self, at: int, y: float, text: str, points: int = BODY, strong: bool = False) -> Text:
@@ -64,7 +66,10 @@ class Grid:
         for at, text in enumerate(texts):
             strong = first_strong and at == 0
             lines = faces.wrapped(text, points, self.widths[at], strong) or [""]
-            items += [self.cell(at, 11.0 + leading * place, line, points, strong) for place, line in enumerate(lines)]
+            items += [
+                self.cell(at, 11.0 + leading * place, line, points, strong)
+                for place, line in enumerate(lines)
+            ]
             most = max(most, len(lines))
         height = 4.0 + leading * most + 1.0
         return Block(height, (*items, Line(0.0, height - 1.0, self.width, height - 1.0, HAIR)))

@@ -7,10 +7,8 @@ from collections.abc import Sequence
 from PySide6.QtGui import QPainter
 
 from app import tabular, words
-from app.diagram.geometry import Look
 from app.inks import PRINT
-from app.picture import Picture
-from engine.levels import NodeLevels
+from app.picture import Picture, tightest
 from engine.outcome import Outcome
 
 from . import faces
@@ -40,7 +38,9 @@ def path_pages(outcome: Outcome, path: Sequence[str], paper: Paper) -> list[Page
     beside = height - summary.height - sum(row.height for row in rows)
     room = beside if beside >= _LEAST_HEIGHT else height - summary.height
     picture = _picture(outcome, path, width, min(room - 6.0, width * _MOST_RATIO))
-    blocks = [picture, summary, stacked(rows[:2]), *rows[2:]] if room == beside else [stacked([picture, summary])]
+    blocks = (
+        [picture, summary, stacked(rows[:2]), *rows[2:]] if room == beside else [stacked([picture, summary])]
+    )
     placed = pour(blocks, Block(0.0), area)
     if room != beside:
         placed += pour(rows[2:], grid.head(), area)
@@ -50,10 +50,8 @@ def path_pages(outcome: Outcome, path: Sequence[str], paper: Paper) -> list[Page
 
 
 def make_picture(outcome: Outcome, path: Sequence[str], width: float, height: float) -> Picture:
-    """The path's picture for a rectangle in points, its narrowest stage marked with numbers."""
-    tight = _tightest(outcome, path)
-    look = Look(narrowest=tight.stage if tight else None)
-    return Picture(outcome, path, width / POINTS_PER_PX, height / POINTS_PER_PX, look)
+    """The path's picture for a rectangle in points."""
+    return Picture(outcome, path, width / POINTS_PER_PX, height / POINTS_PER_PX)
 
 
 def _picture(outcome: Outcome, path: Sequence[str], width: float, height: float) -> Block:
@@ -73,20 +71,16 @@ def _summary(outcome: Outcome, path: Sequence[str], width: float) -> Block:
     return Block(_LEADING * len(lines) + 4.0, items)
 
 
-def _tightest(outcome: Outcome, path: Sequence[str]) -> NodeLevels | None:
-    """The node of the path with the least peak margin."""
-    known = [(node.peak_margin, at) for at, node in enumerate(outcome.trace(path)) if node.peak_margin is not None]
-    return outcome.trace(path)[min(known)[1]] if known else None
-
-
 def _sentences(outcome: Outcome, path: Sequence[str]) -> list[str]:
     trace = outcome.trace(path)
     found = []
     first = trace[0]
     if first.level is not None and first.peak is not None:
         crest = words.margin(first.peak - first.level + 3.0103)
-        found.append(f"{first.name}: {words.level(first.level, first.unit)}, crest factor {crest}. All sources are taken to rise together.")
-    node = _tightest(outcome, path)
+        found.append(
+            f"{first.name}: {words.level(first.level, first.unit)}, crest factor {crest}. All sources are taken to rise together."
+        )
+    node = tightest(outcome, path)
     if node is not None:
         found.append(
             f"Narrowest on this path: {words.margin(node.peak_margin)} of peak margin and {words.margin(node.headroom)} of headroom "

@@ -13,7 +13,15 @@ from .frame import body_area
 from .grid import Column, Grid
 from .page import HAIR, SMALL, Line, Page, Paper
 
-_LEAST = {"unit": 30.0, "headroom": 40.0, "peak margin": 48.0, "noise": 30.0, "noise (A)": 37.0, "ceiling": 30.0, "S/N": 24.0}
+_LEAST = {
+    "unit": 30.0,
+    "headroom": 40.0,
+    "peak margin": 48.0,
+    "noise": 30.0,
+    "noise (A)": 37.0,
+    "ceiling": 30.0,
+    "S/N": 24.0,
+}
 _GAP = 5.0
 _ROW = 12.0
 
@@ -40,7 +48,10 @@ def node_rows(outcome: Outcome, nodes: Sequence[NodeLevels], grid: Grid) -> list
     """A row of small type for each node, ruled under each stage."""
     rows: list[Block] = []
     for at, node in enumerate(nodes):
-        texts = [tabular.place(outcome.project, node), *(column.text(node) for column in tabular.NODE_COLUMNS)]
+        texts = [
+            tabular.place(outcome.project, node),
+            *(column.text(node) for column in tabular.NODE_COLUMNS),
+        ]
         cells = [grid.cell(place, 8.5, text, SMALL, place == 0) for place, text in enumerate(texts)]
         last_of_stage = at + 1 == len(nodes) or nodes[at + 1].stage != node.stage
         rule = [Line(0.0, _ROW - 0.6, grid.width, _ROW - 0.6, HAIR)] if last_of_stage else []

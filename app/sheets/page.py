@@ -15,7 +15,11 @@ SMALL, BODY, LARGE, TITLE = 8, 10, 14, 20  # the sheets' own type scale, in poin
 HAIR, RULE, HEAVY = 0.4, 0.8, 1.6  # line widths, in points
 
 #: Width and height of each paper in upright use, in mm (ISO 216; ANSI/ASME Y14.1 A).
-PAPERS: dict[str, tuple[float, float]] = {"A4": (210.0, 297.0), "A3": (297.0, 420.0), "Letter": (215.9, 279.4)}
+PAPERS: dict[str, tuple[float, float]] = {
+    "A4": (210.0, 297.0),
+    "A3": (297.0, 420.0),
+    "Letter": (215.9, 279.4),
+}
 
 
 @dataclass(frozen=True)

@@ -31,7 +31,12 @@ _COLUMNS = (
 def signal_order_pages(project: Project, paper: Paper) -> list[Page]:
     """Every control of every stage, as the signal meets them."""
     groups = in_signal_order(project)
-    return _pages(paper, "Settings", _about(groups, "in signal order"), lambda grid: [_stage(grid, each) for each in groups])
+    return _pages(
+        paper,
+        "Settings",
+        _about(groups, "in signal order"),
+        lambda grid: [_stage(grid, each) for each in groups],
+    )
 
 
 def rack_order_pages(project: Project, paper: Paper) -> list[Page]:
@@ -96,7 +101,10 @@ def _line(grid: Grid, line: SettingLine) -> Block:
     items: list[Item] = [
         Box(grid.lefts[0] + 1.0, 5.0, _TICK, _TICK),
         *(grid.cell(2, 15.0 + _NEXT_LINE * at, text) for at, text in enumerate(control)),
-        *(Text(grid.lefts[3], 16.0 + _NEXT_PANEL_LINE * at, text, LARGE, True) for at, text in enumerate(panel)),
+        *(
+            Text(grid.lefts[3], 16.0 + _NEXT_PANEL_LINE * at, text, LARGE, True)
+            for at, text in enumerate(panel)
+        ),
         grid.cell(4, 15.0, line.state, BODY, line.state == "locked"),
         Box(grid.lefts[5], 3.0, grid.widths[5], height - 5.0, HAIR),
         Box(grid.lefts[6], 3.0, grid.widths[6], height - 5.0, HAIR),

@@ -6,6 +6,7 @@ from engine.project import Project
 
 from .venue import Venue
 
+# fmt: off: one line per thing reads as a table
 RACK = "Credenza rack"
 
 
@@ -18,8 +19,27 @@ def build() -> Project:
     )
     add, link, chain = venue.add, venue.link, venue.chain
 
-    add("sound_source", "talker", "Talker at lectern", 0, 0, level_spl="68 dB SPL", stated_at_m="0.5 m", crest_db="15 dB")
-    add("sound_source", "table", "Talkers at table", 0, 1, count=4, level_spl="60 dB SPL", stated_at_m="0.6 m", crest_db="15 dB")
+    add(
+        "sound_source",
+        "talker",
+        "Talker at lectern",
+        0,
+        0,
+        level_spl="68 dB SPL",
+        stated_at_m="0.5 m",
+        crest_db="15 dB",
+    )
+    add(
+        "sound_source",
+        "table",
+        "Talkers at table",
+        0,
+        1,
+        count=4,
+        level_spl="60 dB SPL",
+        stated_at_m="0.6 m",
+        crest_db="15 dB",
+    )
     add("line_source", "radio", "Radio receiver", 0, 2, rack=f"{RACK}, unit 2", nominal_v="-8 dBu", max_output_v="+18 dBu",
         z_out_ohm="150 ohm", crest_db="15 dB", noise="102 dB(A) re max", spectrum="speech", form="push-pull",
         lower_by_db=["20 dB"], level_switch=(0, "locked"))  # fmt: skip
@@ -33,14 +53,27 @@ def build() -> Project:
 
     mixer = f"{RACK}, unit 4"
     add("preamplifier", "lectern_pre", "Lectern preamp", 2, 0, rack=mixer, gain_db=46, pad=(0, "locked"))
-    add("preamplifier", "table_pre", "Table preamps", 2, 1, count=4, rack=mixer, gain_db=49, pad=(0, "locked"))
+    add(
+        "preamplifier", "table_pre", "Table preamps", 2, 1, count=4, rack=mixer, gain_db=49, pad=(0, "locked")
+    )
     channel = {"rack": mixer, "low_cut": (1, "locked")}
     add("mixer_channel", "lectern_ch", "Lectern channel", 3, 0, fader_db=(0, "operator"), **channel)
     add("mixer_channel", "table_ch", "Table channels", 3, 1, count=4, fader_db=(-8, "operator"), **channel)
     add("mixer_channel", "radio_ch", "Radio channel", 3, 2, trim_db=5, fader_db=(-5, "operator"), **channel)
-    add("mixer_channel", "laptop_ch", "Laptop channel", 3, 3, rack=mixer, trim_db=12, fader_db=(-8, "operator"))
+    add(
+        "mixer_channel",
+        "laptop_ch",
+        "Laptop channel",
+        3,
+        3,
+        rack=mixer,
+        trim_db=12,
+        fader_db=(-8, "operator"),
+    )
     add("mix_bus", "main", "Room mix", 4, 0, rack=mixer, fader_db=(0, "operator"), mute=(0, "operator"))
-    add("mix_bus", "stream", "Stream mix", 4, 4, rack=mixer, fader_db=(-3, "adjustable"), mute=(0, "operator"))
+    add(
+        "mix_bus", "stream", "Stream mix", 4, 4, rack=mixer, fader_db=(-3, "adjustable"), mute=(0, "operator")
+    )
 
     chain("talker", "lectern_mic", "lectern_pre", "lectern_ch", "main")
     chain("table", "table_mic", "table_pre", "table_ch", "main")
@@ -57,8 +90,28 @@ def build() -> Project:
         limiter_2=(1, "locked"), limit_rms_2_dbfs=(-10, "locked"), limit_peak_2_dbfs=(-4, "locked"))  # fmt: skip
     chain("main", "processor")
     add("line_cable", "stream_line", "Line to encoder", 5, 4, length_m="15 m")
-    add("pad", "stream_pad", "Encoder pad", 6, 4, loss_db="10 dB", z_ohm="10 k", rack="Encoder shelf", inserted=(1, "locked"))
-    add("feed", "encoder", "Stream encoder", 7, 4, rack="Encoder shelf", use="stream", nominal_v="-10 dBV", max_input_v="+6 dBV")
+    add(
+        "pad",
+        "stream_pad",
+        "Encoder pad",
+        6,
+        4,
+        loss_db="10 dB",
+        z_ohm="10 k",
+        rack="Encoder shelf",
+        inserted=(1, "locked"),
+    )
+    add(
+        "feed",
+        "encoder",
+        "Stream encoder",
+        7,
+        4,
+        rack="Encoder shelf",
+        use="stream",
+        nominal_v="-10 dBV",
+        max_input_v="+6 dBV",
+    )
     chain("stream", "stream_line", "stream_pad", "encoder")
 
     for place, (half, output) in enumerate((("front", "out"), ("rear", "out_2"))):
@@ -68,7 +121,15 @@ def build() -> Project:
             attenuator_db=(-26, "locked"),
         )  # fmt: skip
         link("processor", amplifier, output)
-        add("speaker_line", f"line_{half}", f"Line {half}", 7, place, length_m=f"{18 + 6 * place} m", area_mm2="1.5 mm²")
+        add(
+            "speaker_line",
+            f"line_{half}",
+            f"Line {half}",
+            7,
+            place,
+            length_m=f"{18 + 6 * place} m",
+            area_mm2="1.5 mm²",
+        )
         add("loudspeaker", f"ceiling_{half}", f"Ceiling {half}", 8, place, sensitivity_spl="89 dB 1 W/1 m", z_ohm="16 ohm",
             continuous_w="30 W", directivity_q="4", boxes=4, adds="power", area="ceiling")  # fmt: skip
         chain(amplifier, f"line_{half}", f"ceiling_{half}")
@@ -86,4 +147,6 @@ def build() -> Project:
 def _with_distance(link, distances):
     from engine.figures import Figure
 
-    return link.with_fields(distance_m=Figure(text=distances[link.source])) if link.source in distances else link
+    return (
+        link.with_fields(distance_m=Figure(text=distances[link.source])) if link.source in distances else link
+    )

@@ -6,12 +6,26 @@ from engine.project import Project
 
 from .venue import Venue
 
+# fmt: off: one line per thing reads as a table
 DESK = "Mixing desk"
 AMPLIFIERS = ("Amplifier rack left", "Amplifier rack right")
 PROCESSORS = "Processor rack"
 
-CONDENSER = {"self_noise_spl": "16 dB(A)", "max_spl": "134 dB SPL", "z_ohm": "150 ohm", "form": "impedance-balanced"}
-CLIP_ON = {"sensitivity_v_per_pa": "6 mV/Pa", **CONDENSER, "self_noise_spl": "24 dB(A)", "max_spl": "140 dB SPL"}
+Heard = dict[str, tuple[float, float]]  # loudspeaker: distance [m], off-axis loss [dB]
+Seat = tuple[str, str, str, str, Heard]
+
+CONDENSER = {
+    "self_noise_spl": "16 dB(A)",
+    "max_spl": "134 dB SPL",
+    "z_ohm": "150 ohm",
+    "form": "impedance-balanced",
+}
+CLIP_ON = {
+    "sensitivity_v_per_pa": "6 mV/Pa",
+    **CONDENSER,
+    "self_noise_spl": "24 dB(A)",
+    "max_spl": "140 dB SPL",
+}
 SMALL = {"sensitivity_v_per_pa": "12 mV/Pa", **CONDENSER}
 DYNAMIC = {"sensitivity_v_per_pa": "2 mV/Pa", "z_ohm": "200 ohm", "form": "transformer"}
 
@@ -42,11 +56,13 @@ LOUDSPEAKERS = (
 )  # fmt: skip
 
 #: key, name, role, target, and each loudspeaker's distance and off-axis loss.
-SEATS = (
-    ("row_m", "Row M centre", "reference", "88 dB SPL", {"left": (15, 3), "right": (15, 3), "sub": (15, 0), "fill": (12, 8), "delay": (9, 12)}),
+SEATS: tuple[Seat, ...] = (
+    ("row_m", "Row M centre", "reference", "88 dB SPL",
+     {"left": (15, 3), "right": (15, 3), "sub": (15, 0), "fill": (12, 8), "delay": (9, 12)}),
     ("row_b", "Row B centre", "nearest", "88 dB SPL", {"left": (8, 9), "right": (8, 9), "sub": (6, 0), "fill": (2.6, 2)}),
     ("row_d", "Row D left", "other", "89 dB SPL", {"left": (8, 2), "right": (13, 9), "sub": (7, 0), "fill": (4.5, 3)}),
-    ("under", "Row T under balcony", "other", "87 dB SPL", {"left": (24, 3), "right": (24, 3), "sub": (24, 0), "delay": (3.5, 0)}),
+    ("under", "Row T under balcony", "other", "87 dB SPL",
+     {"left": (24, 3), "right": (24, 3), "sub": (24, 0), "delay": (3.5, 0)}),
     ("balcony", "Balcony front", "other", "88 dB SPL", {"left": (20, 1), "right": (20, 1), "sub": (20, 0)}),
     ("conductor", "Conductor", "other", "82 dB SPL", {"pit": (1.5, 0)}),
     ("wing_left", "Wing, stage left", "other", "84 dB SPL", {"wings": (3.5, 0)}),
@@ -73,7 +89,9 @@ def build() -> Project:
 def _microphones(venue: Venue) -> None:
     for row, (key, name, count, level, crest, figures, gain, fader, group) in enumerate(MICROPHONES):
         spectrum = "speech" if group == "voices" else "pink"
-        venue.add("sound_source", key, name, 0, row, count=count, level_spl=level, crest_db=crest, spectrum=spectrum)
+        venue.add(
+            "sound_source", key, name, 0, row, count=count, level_spl=level, crest_db=crest, spectrum=spectrum
+        )
         venue.add("microphone", f"{key}_mic", f"{name} microphone", 1, row, count=count, **figures)
         venue.add("line_cable", f"{key}_cable", f"{name} multicore", 2, row, count=count, length_m="45 m")
         venue.add("preamplifier", f"{key}_pre", f"{name} preamp", 3, row, count=count, rack=f"{DESK}, input cards",
@@ -84,7 +102,9 @@ def _microphones(venue: Venue) -> None:
 
 
 def _lines(venue: Venue) -> None:
-    for row, (key, name, count, nominal, most, crest, trim, fader, group) in enumerate(LINES, start=len(MICROPHONES)):
+    for row, (key, name, count, nominal, most, crest, trim, fader, group) in enumerate(
+        LINES, start=len(MICROPHONES)
+    ):
         venue.add("line_source", key, name, 0, row, count=count, nominal_v=nominal, max_output_v=most, crest_db=crest,
                   z_out_ohm="150 ohm", form="transformer", lower_by_db=[], noise="105 dB(A) re max",
                   spectrum="speech" if group == "voices" else "pink")  # fmt: skip
@@ -92,20 +112,34 @@ def _lines(venue: Venue) -> None:
         venue.link(key, f"{key}_ch")
 
 
-def _channel(venue: Venue, key: str, name: str, row: int, count: int, trim: float, fader: float, group: str) -> None:
+def _channel(
+    venue: Venue, key: str, name: str, row: int, count: int, trim: float, fader: float, group: str
+) -> None:
     venue.add("mixer_channel", f"{key}_ch", f"{name} channels", 4, row, count=count, rack=f"{DESK}, {group} bay", trim_db=trim,
               fader_db=(fader, "operator"), low_cut=(1 if group == "voices" else 0, "locked"))  # fmt: skip
 
 
 def _mixes(venue: Venue) -> None:
-    keys = {group: [each[0] for each in (*MICROPHONES, *LINES) if each[-1] == group] for group in ("voices", "band")}
+    keys = {
+        group: [each[0] for each in (*MICROPHONES, *LINES) if each[-1] == group]
+        for group in ("voices", "band")
+    }
     buses = (
         ("voices", "Voices group", 5, 0, -2), ("band", "Band group", 5, 1, -5),
         ("bus_left", "Left mix", 6, 0, 0), ("bus_right", "Right mix", 6, 1, 0),
         ("bus_pit", "Pit mix", 6, 5, -10), ("bus_wings", "Wing mix", 6, 6, -1.5),
     )  # fmt: skip
     for key, name, column, row, fader in buses:
-        venue.add("mix_bus", key, name, column, row, rack=f"{DESK}, master bay", fader_db=(fader, "operator"), mute=(0, "operator"))
+        venue.add(
+            "mix_bus",
+            key,
+            name,
+            column,
+            row,
+            rack=f"{DESK}, master bay",
+            fader_db=(fader, "operator"),
+            mute=(0, "operator"),
+        )
     for group, members in keys.items():
         for member in members:
             venue.link(f"{member}_ch", group)
@@ -129,8 +163,26 @@ def _processors(venue: Venue) -> None:
               **outputs(0, 5, high_pass_1_hz="80 Hz", high_pass_2_hz="32 Hz", low_pass_2_hz="80 Hz"))  # fmt: skip
     venue.add("processor", "proc_right", "Processor right", 7, 1, rack=f"{PROCESSORS}, unit 3",
               **outputs(0, -2, 0, high_pass_1_hz="80 Hz", high_pass_2_hz="150 Hz", high_pass_3_hz="120 Hz"))  # fmt: skip
-    venue.add("equaliser", "eq_pit", "Pit equaliser", 7, 5, rack=f"{PROCESSORS}, unit 5", bypass=(0, "locked"), level_db=(0, "locked"))
-    venue.add("equaliser", "eq_wings", "Wing equaliser", 7, 6, rack=f"{PROCESSORS}, unit 6", bypass=(0, "locked"), level_db=(0, "locked"))
+    venue.add(
+        "equaliser",
+        "eq_pit",
+        "Pit equaliser",
+        7,
+        5,
+        rack=f"{PROCESSORS}, unit 5",
+        bypass=(0, "locked"),
+        level_db=(0, "locked"),
+    )
+    venue.add(
+        "equaliser",
+        "eq_wings",
+        "Wing equaliser",
+        7,
+        6,
+        rack=f"{PROCESSORS}, unit 6",
+        bypass=(0, "locked"),
+        level_db=(0, "locked"),
+    )
     venue.chain("bus_left", "proc_left")
     venue.chain("bus_right", "proc_right")
     venue.chain("bus_pit", "eq_pit")
@@ -138,9 +190,14 @@ def _processors(venue: Venue) -> None:
 
 
 def _loudspeakers(venue: Venue) -> None:
-    feeds = {"left": ("proc_left", "out"), "sub": ("proc_left", "out_2"), "right": ("proc_right", "out"),
-             "fill": ("proc_right", "out_2"), "delay": ("proc_right", "out_3"), "pit": ("eq_pit", "out"), "wings": ("eq_wings", "out")}  # fmt: skip
-    for row, (key, name, rack, ratings, attenuator, sensitivity, z_ohm, q, boxes, power, length) in enumerate(LOUDSPEAKERS):
+    feeds = {
+        "left": ("proc_left", "out"), "sub": ("proc_left", "out_2"),
+        "right": ("proc_right", "out"), "fill": ("proc_right", "out_2"), "delay": ("proc_right", "out_3"),
+        "pit": ("eq_pit", "out"), "wings": ("eq_wings", "out"),
+    }  # fmt: skip
+    for row, (key, name, rack, ratings, attenuator, sensitivity, z_ohm, q, boxes, power, length) in enumerate(
+        LOUDSPEAKERS
+    ):
         venue.add("power_amplifier", f"{key}_amp", f"{name} amplifier", 8, row, rack=f"{AMPLIFIERS[rack]}, unit {4 + 2 * row}",
                   rated_power_w=ratings, gain_db="32 dB", attenuator_db=(attenuator, "locked"))  # fmt: skip
         venue.add("speaker_line", f"{key}_line", f"{name} line", 9, row, length_m=length, area_mm2="4 mm²")

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import Any
 
 from engine.figures import Figure
@@ -35,11 +36,11 @@ class Venue:
         if off_axis is not None:
             air["off_axis_db"] = Figure(text=f"{off_axis:g} dB")
         key = f"{source}-{target}" if output == "out" else f"{source}-{output}-{target}"
-        self.links.append(Link(id=key, source=source, output=output, target=target, wiring=wiring, **air))  # type: ignore[arg-type]
+        self.links.append(Link(id=key, source=source, output=output, target=target, wiring=wiring, **air))
 
     def chain(self, *keys: str) -> None:
         """Links from each to the next, first output to first input."""
-        for source, target in zip(keys, keys[1:], strict=False):
+        for source, target in pairwise(keys):
             self.link(source, target)
 
     @property
@@ -50,8 +51,12 @@ class Venue:
 def _field(maker: type[Stage], name: str, value: Any) -> Any:
     if name in maker.figure_specs():
         texts = value if isinstance(value, list) else None
-        return tuple(Figure(text=text) for text in texts) if texts is not None else value and Figure(text=value)
+        return (
+            tuple(Figure(text=text) for text in texts) if texts is not None else value and Figure(text=value)
+        )
     if name in maker.control_specs():
         value, state, panel = (*value, None, None)[:3] if isinstance(value, tuple) else (value, None, None)
-        return Setting(value=None if value is None else float(value), state=state or "adjustable", panel=panel)
+        return Setting(
+            value=None if value is None else float(value), state=state or "adjustable", panel=panel
+        )
     return value

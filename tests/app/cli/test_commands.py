@@ -59,7 +59,9 @@ def test_table_json_has_the_documented_shape(run):
         shares = [line["share"] for line in seat["budget"]]
         assert shares == sorted(shares, reverse=True)
         assert sum(shares) == pytest.approx(1.0, abs=1e-9)
-        assert all(set(line) == {"stage", "name", "origin", "hiss", "hiss_a", "share"} for line in seat["budget"])
+        assert all(
+            set(line) == {"stage", "name", "origin", "hiss", "hiss_a", "share"} for line in seat["budget"]
+        )
     for load in found["loudspeakers"]:
         assert set(load) == {"stage", "name", "average_w", "peak_w", "continuous_margin_db", "peak_margin_db"}
     for finding in found["findings"]:
@@ -87,7 +89,10 @@ def test_table_of_a_test_tone(run):
     by_tone = json.loads(run("table", MEETING_ROOM, "--json", "--tone", "1000")[1])["nodes"]
     outcome = evaluate(read(MEETING_ROOM)[0], tone_hz=1000.0)
     assert [node["level"] for node in by_tone] == [node.level for node in outcome.nodes]
-    assert run("table", MEETING_ROOM, "--json", "--tone", "1 kHz")[1] == run("table", MEETING_ROOM, "--json", "--tone", "1000 Hz")[1]
+    assert (
+        run("table", MEETING_ROOM, "--json", "--tone", "1 kHz")[1]
+        == run("table", MEETING_ROOM, "--json", "--tone", "1000 Hz")[1]
+    )
 
 
 def test_table_as_text_names_every_stage(run):
@@ -119,10 +124,15 @@ def clipping(tmp_path):
     from engine.store import write
 
     project = read(MEETING_ROOM)[0]
-    sources = [stage for stage in project.stages if not stage.inputs() and "level_spl" in type(stage).figure_specs()]
+    sources = [
+        stage for stage in project.stages if not stage.inputs() and "level_spl" in type(stage).figure_specs()
+    ]
     assert sources, "the meeting room has people talking"
     changes = {
-        stage.id: (stage, stage.with_fields(level_spl=stage.level_spl.model_copy(update={"text": "140 dB SPL"})))  # type: ignore[attr-defined]
+        stage.id: (
+            stage,
+            stage.with_fields(level_spl=stage.level_spl.model_copy(update={"text": "140 dB SPL"})),
+        )  # type: ignore[attr-defined]
         for stage in sources
     }
     path = tmp_path / "loud.gainwright"
@@ -139,9 +149,7 @@ def test_sheet_writes_a_pdf(run, tmp_path, qapp):
     assert target.read_bytes().startswith(b"%PDF-")
 
 
-@pytest.mark.parametrize(
-    ("ending", "start"), [("png", b"\x89PNG"), ("svg", b"<?xml"), ("pdf", b"%PDF-")]
-)
+@pytest.mark.parametrize(("ending", "start"), [("png", b"\x89PNG"), ("svg", b"<?xml"), ("pdf", b"%PDF-")])
 def test_diagram_writes_each_form(run, tmp_path, qapp, ending, start):
     target = tmp_path / f"out.{ending}"
     assert run("diagram", MEETING_ROOM, "-o", target, "--size", "900x500", "--scheme", "dark") == (0, "", "")

@@ -45,14 +45,27 @@ def test_stages_stand_in_signal_order(theatre):
 
 def test_racks_stand_in_natural_order_and_lose_nothing(theatre):
     racks = by_rack(theatre)
-    assert [rack for rack, _ in racks] == ["Amplifier rack left", "Amplifier rack right", "Mixing desk", "Processor rack", ""]
+    assert [rack for rack, _ in racks] == [
+        "Amplifier rack left",
+        "Amplifier rack right",
+        "Mixing desk",
+        "Processor rack",
+        "",
+    ]
     left = [group.rack for group in racks[0][1]]
     assert left == [f"Amplifier rack left, unit {n}" for n in (4, 8, 14, 16)]
-    assert sorted(group.stage for _, rack in racks for group in rack) == sorted(group.stage for group in in_signal_order(theatre))
+    assert sorted(group.stage for _, rack in racks for group in rack) == sorted(
+        group.stage for group in in_signal_order(theatre)
+    )
 
 
 def test_the_own_marking_of_a_person_comes_first():
-    stage = template("power_amplifier", "a", "Amplifier", attenuator_db=Setting(value=-8.0, state="locked", panel="blue dot"))
+    stage = template(
+        "power_amplifier",
+        "a",
+        "Amplifier",
+        attenuator_db=Setting(value=-8.0, state="locked", panel="blue dot"),
+    )
     (line,) = stage_settings(stage).lines
     assert (line.panel, line.value, line.state) == ("blue dot", "−8\u202fdB", "locked")
 
@@ -68,7 +81,9 @@ def test_values_have_the_precision_that_can_be_set():
 def test_set_values_are_at_least_14_points_and_boxes_go_with_them(qapp, theatre, make, paper):
     pages = make(theatre, paper)
     lines = [line for group in in_signal_order(theatre) for line in group.lines]
-    large = " ".join(item.text for page in pages for item in page.items if isinstance(item, Text) and item.points >= LARGE)
+    large = " ".join(
+        item.text for page in pages for item in page.items if isinstance(item, Text) and item.points >= LARGE
+    )
     for word in {line.panel.split()[0] for line in lines}:
         assert word in large
     boxes = [item for page in pages for item in page.items if isinstance(item, Box)]
@@ -83,7 +98,9 @@ def test_heads_are_repeated_and_no_stage_is_split(qapp, theatre):
 
 
 def test_a_stage_taller_than_the_paper_says_that_it_continues(qapp):
-    project = Project(header=Header(name="Hall"), stages=(template("processor", "p", "Processor", outputs_fitted=8),))
+    project = Project(
+        header=Header(name="Hall"), stages=(template("processor", "p", "Processor", outputs_fitted=8),)
+    )
     pages = settings.signal_order_pages(project, Paper("A4", True))
     assert len(pages) > 1
     assert all("Processor (continued)" in page.texts for page in pages[1:])
