@@ -132,6 +132,7 @@ def build(request: Request) -> Geometry:
     labels = place_labels(
         [*_wishes(request, line, scale, to_clip), *_bar_wishes(request.seat, bars)],
         Box(plot.left, 0.0, request.width - 2.0, request.height), LABEL_PX, request.text_width,
+        [span for name in ("clip", "peak", "level", "noise") for span in on_page[name]],
     )  # fmt: skip
     return Geometry(
         plot=plot, scale=scale, look=look, shift_db=shift,
@@ -201,6 +202,7 @@ def _wishes(request: Request, line: Sequence[Place], scale: Scale, to_clip: bool
     """Numbers to stand beside the lines: the selected stage's first, then the narrowest margin's, the ends', the rest."""
     look = request.look
     named: set[str] = set()
+    said: set[tuple[int, str, str]] = set()
     order = sorted(range(len(line)), key=lambda i: (_rank(i, line, look), i))
     for index in order:
         place, rank = line[index], _rank(index, line, look)
@@ -211,6 +213,9 @@ def _wishes(request: Request, line: Sequence[Place], scale: Scale, to_clip: bool
             if value is None or (series == "clip" and to_clip):
                 continue
             text = _said(place, series, look, to_clip)
+            if rank > 2 and {(index - 1, series, text), (index + 1, series, text)} & said:
+                continue  # the same number beside it says enough
+            said.add((index, series, text))
             if series not in named:
                 text = f"{series} {text}"
                 named.add(series)

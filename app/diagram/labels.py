@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 
+Span = tuple[float, float, float, float]
 TextWidth = Callable[[str, bool], float]  # a text in the label size, regular or strong, to its width [px]
 
 GAP_PX = 4.0
 LIFT_PX = 5.0
+MUST_STAND = 20  # ranks below this are the selection's and the narrowest margin's
 
 
 @dataclass(frozen=True)
@@ -27,6 +29,16 @@ class Box:
             and self.top - gap < other.bottom
             and other.top - gap < self.bottom
         )
+
+    def crossed_by(self, span: Span) -> bool:
+        """Whether a line piece runs through the box."""
+        x1, y1, x2, y2 = span
+        if max(x1, x2) <= self.left or min(x1, x2) >= self.right:
+            return False
+        slope = (y2 - y1) / (x2 - x1) if x2 != x1 else 0.0
+        left, right = max(self.left, min(x1, x2)), min(self.right, max(x1, x2))
+        heights = (y1 + slope * (left - x1), y1 + slope * (right - x1))
+        return min(heights) < self.bottom and max(heights) > self.top
 
     def inside(self, other: Box) -> bool:
         return (
@@ -61,18 +73,24 @@ class Label:
 
 
 def place_labels(
-    wishes: Iterable[Wish], plot: Box, height: float, width_of: TextWidth, taken: Iterable[Box] = ()
+    wishes: Iterable[Wish], plot: Box, height: float, width_of: TextWidth, lines: Sequence[Span] = ()
 ) -> tuple[Label, ...]:
-    """The labels that find room, the most wanted first; none touches another or leaves the plot."""
+    """The labels that find room, the most wanted first; none touches another, leaves the plot or stands on a line.
+
+    The first ranks may stand on a line where nothing else is free.
+    """
     standing: list[Label] = []
-    occupied = list(taken)
     for wish in sorted(wishes, key=lambda w: w.rank):
         width = width_of(wish.text, wish.strong)
-        for box in _candidates(wish, width, height):
-            if box.inside(plot) and not any(box.touches(other, 2.0) for other in occupied):
-                standing.append(Label(box, wish.text, wish.series, wish.strong))
-                occupied.append(box)
-                break
+        free = [
+            box
+            for box in _candidates(wish, width, height)
+            if box.inside(plot) and not any(box.touches(other.box, 2.0) for other in standing)
+        ]
+        clear = [box for box in free if not any(box.crossed_by(line) for line in lines)]
+        chosen = clear or (free if wish.rank < MUST_STAND else [])
+        if chosen:
+            standing.append(Label(chosen[0], wish.text, wish.series, wish.strong))
     return tuple(standing)
 
 

@@ -14,7 +14,7 @@ UNITS: tuple[Unit, ...] = ("dBu", "dBV", "V")
 DBV_OVER_DBU = 10.0 * math.log10(0.6)  # a level in dBV is this much more than in dBu: -2.22 dB
 
 LEAST_SPAN_DB = 40.0
-TICK_PX = 56.0  # ticks stand at least so far apart
+TICK_PX = 44.0  # ticks stand at least so far apart
 STEPS_DB = (5.0, 10.0, 20.0, 30.0, 50.0)
 
 
@@ -53,7 +53,7 @@ class Scale:
 
     def step_db(self) -> float:
         """The distance of ticks that keeps them readable."""
-        return next((step for step in STEPS_DB if step * self.db_px >= TICK_PX * 0.5), STEPS_DB[-1])
+        return next((step for step in STEPS_DB if step * self.db_px >= TICK_PX), STEPS_DB[-1])
 
 
 def fit_range(levels: Iterable[float], *, margin_db: float = 4.0) -> Range:
