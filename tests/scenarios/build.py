@@ -7,6 +7,7 @@ without noise; `bare` takes loads and output impedances out of a stage.
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from itertools import pairwise
 from typing import Any
 
 from engine.figures import Figure
@@ -97,7 +98,7 @@ def project(
         made.append(
             Link(
                 id=text, source=source, output=output or "out", target=target, input=port or "in",
-                wiring=wiring.get(target, "balanced"),  # type: ignore[arg-type]
+                wiring=wiring.get(target, "balanced"),
                 distance_m=Figure(text=distance, origin="measured") if distance else None,
             )
         )  # fmt: skip
@@ -106,7 +107,7 @@ def project(
 
 def chain(*stages: Stage, distance: str | None = None, **wiring: str) -> Project:
     """Stages one after another; `distance` is that of the last link, from loudspeaker to seat."""
-    links = [f"{a.id} > {b.id}" for a, b in zip(stages[:-1], stages[1:], strict=True)]
+    links = [f"{a.id} > {b.id}" for a, b in pairwise(stages)]
     return project(stages, links, {links[-1]: distance} if distance else None, **wiring)
 
 
