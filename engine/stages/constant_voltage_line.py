@@ -174,7 +174,7 @@ class ConstantVoltageLine(_Groups, Stage):
         if "saturation_v" in values:
             clip = np.asarray(values["saturation_v"]) ** 2
             rated_hz = np.asarray(values.get("saturation_v.frequency_hz", 50.0))
-            flux = np.maximum(1.0, (rated_hz / axis.f_hz) ** 2)
+            flux = (rated_hz / axis.f_hz) ** 2
         line = Active("line", gain=cut, clip_out=clip, clip_weight=flux)
         coil2 = (
             values["speaker_ohm"]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import ClassVar, Literal
 
 import numpy as np
@@ -23,6 +24,7 @@ from .shared import (
     domain_of,
     form_option,
     marked_db,
+    nominal_above_maximum,
     signal_option,
     stated_noise,
 )
@@ -143,6 +145,9 @@ class DynamicsProcessor(Stage):
         if self.signal == "digital":
             return np.asarray(power_from_db(values["threshold_dbfs"]))
         return np.asarray(v2_from_dbu(values["threshold_dbu"]))
+
+    def check(self, values: Values, axis: Axis) -> Iterator[str]:
+        yield from nominal_above_maximum(self.name, values, "max_v")
 
     def summary(self) -> str:
         if not self.inserted.value:

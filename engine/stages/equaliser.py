@@ -26,6 +26,7 @@ from .shared import (
     domain_of,
     form_option,
     marked_db,
+    nominal_above_maximum,
     numbered,
     signal_option,
     stated_noise,
@@ -108,6 +109,7 @@ class Equaliser(Parametric, Stage):
         return found
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
+        yield from nominal_above_maximum(self.name, values, "max_v")
         count = len(self.graphic_db)
         if count and count not in GRAPHICS:
             yield f"Graphic gains of {self.name} are {count}: give 31 or 10"

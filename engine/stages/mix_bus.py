@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import ClassVar, Literal
 
 import numpy as np
@@ -22,6 +23,7 @@ from .shared import (
     domain_of,
     form_option,
     marked_db,
+    nominal_above_maximum,
     signal_option,
     stated_noise,
 )
@@ -123,6 +125,9 @@ class MixBus(Stage):
             {"out": Output("fader", z_out, self.form), "before_fader": Output("sum", z_out, self.form)},
             join=JOINS[self.adds],
         )  # fmt: skip
+
+    def check(self, values: Values, axis: Axis) -> Iterator[str]:
+        yield from nominal_above_maximum(self.name, values, "max_output_v")
 
     def summary(self) -> str:
         return "muted" if self.mute.value else marked_db(self.fader_db)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import ClassVar, Literal
 
 import numpy as np
@@ -16,7 +17,16 @@ from .base import Port, Stage
 from .declare import Setting, control, figure, switch
 from .declared import Values
 from .parametric import boost, corner, sharpness
-from .shared import ANALOGUE_ONLY, Electrical, Signal, domain_of, marked_db, signal_option, stated_noise
+from .shared import (
+    ANALOGUE_ONLY,
+    Electrical,
+    Signal,
+    domain_of,
+    marked_db,
+    nominal_above_maximum,
+    signal_option,
+    stated_noise,
+)
 
 TAPS = (
     ("before_equaliser", "trim"),
@@ -128,6 +138,9 @@ class MixerChannel(Stage):
         return ActiveStage(
             sections, {"in": Input("trim", own.z_in_ohm)}, {"out": Output("mute", z_out), **taps}
         )
+
+    def check(self, values: Values, axis: Axis) -> Iterator[str]:
+        yield from nominal_above_maximum(self.name, values, "max_v")
 
     def summary(self) -> str:
         return "muted" if self.mute.value else marked_db(self.fader_db)

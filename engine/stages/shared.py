@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any, Literal
 
@@ -108,6 +108,12 @@ class Electrical:
         max2 = np.asarray(values[largest], dtype=float) ** 2
         nominal2 = np.asarray(values["nominal_v"], dtype=float) ** 2
         return cls(max2, {"nominal": nominal2, "max": max2}, values["z_in_ohm"], values["z_out_ohm"])
+
+
+def nominal_above_maximum(name: str, values: Values, largest: str) -> Iterator[str]:
+    """A nominal level above the largest clean one: it would make an S/N above the dynamic range."""
+    if largest in values and np.any(np.asarray(values["nominal_v"]) > np.asarray(values[largest])):
+        yield f"{name} has a nominal level above its maximum level: its S/N would be above its dynamic range"
 
 
 def numbered(values: Values, name: str) -> list[Number]:

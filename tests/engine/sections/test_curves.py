@@ -75,5 +75,7 @@ def test_which_amplifier_is_quietest():
 
 
 def test_a_reference_the_stage_lacks_is_named():
-    with pytest.raises(ValueError, match="refers to 'rated', which this stage does not state: refer it to max"):
+    with pytest.raises(
+        ValueError, match="refers to 'rated', which this stage does not state: refer it to max"
+    ):
         noise_total(100.0, "rated", {"max": 1.0})

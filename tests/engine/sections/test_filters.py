@@ -23,7 +23,9 @@ def judged(b: list[float], a: list[float], f0: float) -> np.ndarray:
 def test_bell(gain_db, f0, q):
     """The cookbook's peaking prototype; exactly the gain at the centre."""
     a = 10.0 ** (gain_db / 40.0)
-    np.testing.assert_allclose(filters.bell(F_HZ, f0, gain_db, q), judged([1, a / q, 1], [1, 1 / (a * q), 1], f0), rtol=1e-12)
+    np.testing.assert_allclose(
+        filters.bell(F_HZ, f0, gain_db, q), judged([1, a / q, 1], [1, 1 / (a * q), 1], f0), rtol=1e-12
+    )
     assert 10.0 * np.log10(filters.bell(np.array([f0]), f0, gain_db, q)) == pytest.approx(gain_db, abs=1e-9)
 
 
@@ -47,7 +49,9 @@ def test_shelves(gain_db, q):
 def test_butterworth(order, sort):
     """scipy.signal.butter, analogue."""
     b, a = signal.butter(order, 2.0 * np.pi * 250.0, sort, analog=True)
-    ours = {"low": filters.butterworth_low_pass, "high": filters.butterworth_high_pass}[sort](F_HZ, 250.0, order)
+    ours = {"low": filters.butterworth_low_pass, "high": filters.butterworth_high_pass}[sort](
+        F_HZ, 250.0, order
+    )
     np.testing.assert_allclose(ours, np.abs(signal.freqs(b, a, W)[1]) ** 2, rtol=1e-6)
 
 
@@ -55,14 +59,18 @@ def test_butterworth(order, sort):
 def test_linkwitz_riley_halves_add_up_flat(slope):
     """−6.02 dB at the corner; low- and high-pass amplitudes sum to one in the orders whose halves are in phase (24, 48 dB/oct)."""
     low, high = (np.sqrt(make(F_HZ, 500.0, slope)) for make in (filters.low_pass, filters.high_pass))
-    assert 20.0 * np.log10(np.sqrt(filters.low_pass(np.array([500.0]), 500.0, slope))) == pytest.approx(-6.0206, abs=1e-4)
+    assert 20.0 * np.log10(np.sqrt(filters.low_pass(np.array([500.0]), 500.0, slope))) == pytest.approx(
+        -6.0206, abs=1e-4
+    )
     np.testing.assert_allclose(low + high, 1.0, rtol=1e-12)
 
 
 def test_sub_at_minus_5_db_moves_the_equal_level_point():
     """S30: 24 dB/oct Linkwitz–Riley at 90 Hz: at −5 dB the halves are level at 77.9 Hz, at +6 dB at 107.0 Hz."""
     f_hz = np.linspace(50.0, 150.0, 200_001)
-    low, high = (make(f_hz, 90.0, "24 dB/oct Linkwitz–Riley") for make in (filters.low_pass, filters.high_pass))
+    low, high = (
+        make(f_hz, 90.0, "24 dB/oct Linkwitz–Riley") for make in (filters.low_pass, filters.high_pass)
+    )
     for gain_db, expected in ((-5.0, 77.9), (6.0, 107.0)):
         apart = np.abs(10.0 * np.log10(low / high) + gain_db)
         assert f_hz[np.argmin(apart)] == pytest.approx(expected, abs=0.05)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import Any
 
 from engine.figures import Figure
@@ -17,7 +18,8 @@ NO_LOAD = "1000 M"
 
 def make(kind: str, id: str | None = None, **fields: Any) -> Stage:
     """A stage: figures as text, several as a list, controls as numbers (None is off), options as they are."""
-    maker, given = KINDS[kind], {}
+    maker = KINDS[kind]
+    given: dict[str, Any] = {}
     for name, value in fields.items():
         if name in maker.control_specs():
             given[name] = Setting(value=value)
@@ -32,7 +34,13 @@ def make(kind: str, id: str | None = None, **fields: Any) -> Stage:
 
 def line(level: str = "0 dBu", id: str = "source", **fields: Any) -> Stage:
     """A line source that is stiff, silent and cannot clip."""
-    usual = {"nominal_v": level, "max_output_v": "+60 dBu", "z_out_ohm": NO_OHM, "noise": SILENT, "crest_db": "12 dB"}
+    usual = {
+        "nominal_v": level,
+        "max_output_v": "+60 dBu",
+        "z_out_ohm": NO_OHM,
+        "noise": SILENT,
+        "crest_db": "12 dB",
+    }
     return make("line_source", id, **{**usual, **fields})
 
 
@@ -45,7 +53,7 @@ def row(*stages: Stage, tone: str = "1 kHz", **distances: str) -> Project:
     """Stages one behind the other; a distance names the stage its link leads into."""
     placed = [stage.with_fields(column=place) for place, stage in enumerate(stages)]
     links = []
-    for before, after in zip(placed, placed[1:], strict=False):
+    for before, after in pairwise(placed):
         distance = distances.get(after.id)
         links.append(
             Link(
@@ -67,7 +75,11 @@ def tone(frequency_hz: float, *stages: Stage, **distances: str) -> Outcome:
 
 def source_for(domain: Domain) -> Stage:
     """Something that feeds an input of a domain."""
-    kinds = {Domain.ACOUSTIC: "sound_source", Domain.ANALOGUE: "line_source", Domain.DIGITAL: "digital_source"}
+    kinds = {
+        Domain.ACOUSTIC: "sound_source",
+        Domain.ANALOGUE: "line_source",
+        Domain.DIGITAL: "digital_source",
+    }
     return make(kinds[domain], "source")
 
 

@@ -12,7 +12,15 @@ FLAT = {"z_in_ohm": NO_LOAD, "z_out_ohm": NO_OHM, "noise": SILENT, "max_v": "+24
 
 def test_shelf_and_bell_at_80_hz():
     """S25: +6 dB shelf and +4 dB bell at 80 Hz make +10 dB there: with a maximum of +24 dBu the input takes +14 dBu."""
-    stage = make("equaliser", low_shelf_hz="2 kHz", low_shelf_db=6.0, bell_1_hz="80 Hz", bell_1_q="1.4", bell_1_db=4.0, **FLAT)
+    stage = make(
+        "equaliser",
+        low_shelf_hz="2 kHz",
+        low_shelf_db=6.0,
+        bell_1_hz="80 Hz",
+        bell_1_q="1.4",
+        bell_1_db=4.0,
+        **FLAT,
+    )
     out = tone(80.0, line("0 dBu"), stage, end())
     assert out.node("equaliser", "out").level == pytest.approx(10.0, abs=0.02)
     assert out.node("equaliser", "in").ceiling == pytest.approx(14.0, abs=0.02)
@@ -20,8 +28,12 @@ def test_shelf_and_bell_at_80_hz():
 
 def test_boost_raises_the_noise_ahead_of_it():
     """A shelf far above the audio band lifts everything 12 dB, the equaliser's own noise too (C13)."""
-    stage = make("equaliser", low_shelf_hz="900 kHz", low_shelf_db=12.0, **{**FLAT, "noise": "-90 dBu unweighted"})
-    assert solved(line("0 dBu"), stage, end()).node("equaliser", "out").noise == pytest.approx(-78.0, abs=0.02)
+    stage = make(
+        "equaliser", low_shelf_hz="900 kHz", low_shelf_db=12.0, **{**FLAT, "noise": "-90 dBu unweighted"}
+    )
+    assert solved(line("0 dBu"), stage, end()).node("equaliser", "out").noise == pytest.approx(
+        -78.0, abs=0.02
+    )
 
 
 def test_bypass_takes_the_filters_out():

@@ -30,7 +30,7 @@ VARIANTS = {
     "direct_box": {"build": "active"},
     "loudspeaker": {"boxes": 4, "wiring": "series", "compression_db": {"text": "2 dB"}},
 }
-CASES = [(kind, {}) for kind in KINDS] + list(VARIANTS.items())
+CASES: list[tuple[str, dict]] = [(kind, {}) for kind in KINDS] + list(VARIANTS.items())
 
 
 def fed(stage: Stage) -> Project:
@@ -38,7 +38,9 @@ def fed(stage: Stage) -> Project:
     if not stage.inputs():
         return Project(stages=(stage,))
     source = source_for(stage.inputs()[0].domain)
-    link = Link(id="l", source="source", target=stage.id, input=stage.inputs()[0].name, distance_m={"text": "4 m"})
+    link = Link(
+        id="l", source="source", target=stage.id, input=stage.inputs()[0].name, distance_m={"text": "4 m"}
+    )
     return Project(stages=(source, stage.with_fields(column=1)), links=(link,))
 
 
@@ -81,7 +83,9 @@ def test_a_batch_of_settings_equals_single_solves(kind, options):
         single = build_plan(project, overrides={"it": alone_values})
         # A switch that is out in a single solve may leave a section without dynamics: compare levels only.
         alone = solve(single.graph, single.rows, single.axis)
-        np.testing.assert_allclose(together.spectra[:, :, place], alone.spectra[:, :, 0], rtol=1e-12, atol=1e-300)
+        np.testing.assert_allclose(
+            together.spectra[:, :, place], alone.spectra[:, :, 0], rtol=1e-12, atol=1e-300
+        )
         np.testing.assert_allclose(wide.rows.clip_in[:, place], single.rows.clip_in[:, 0], rtol=1e-12)
         np.testing.assert_allclose(wide.rows.clip_out[:, place], single.rows.clip_out[:, 0], rtol=1e-12)
 
@@ -93,9 +97,9 @@ def test_everything_declared_is_explained(kind):
     assert maker.title
     assert maker.family in {"Sources", "Inputs", "Mixing", "Processing", "Lines", "Outputs", "Places"}
     assert len(maker.help) > 20
-    for spec in (*maker.figure_specs().values(), *maker.control_specs().values()):
-        assert spec.label
-        assert len(spec.help) > 8, spec.name
+    explained = [(spec.label, spec.help) for spec in maker.figure_specs().values()]
+    explained += [(spec.label, spec.help) for spec in maker.control_specs().values()]
+    assert all(label and len(text) > 8 for label, text in explained), explained
     stage = template(kind, "it")
     assert all(given.origin == "guess" for _, _, given in stage.figures())
     for name, spec, setting in stage.controls():
@@ -130,3 +134,13 @@ def test_domains_join_only_through_converting_kinds():
         "loudspeaker": (Domain.ANALOGUE, Domain.ACOUSTIC),
         "powered_loudspeaker": (Domain.ANALOGUE, Domain.ACOUSTIC),
     }
+
+
+@pytest.mark.parametrize(
+    ("kind", "largest"),
+    [("equaliser", "max_v"), ("dynamics", "max_v"), ("mixer_channel", "max_v"), ("mix_bus", "max_output_v")],
+)
+def test_a_nominal_level_above_the_largest_is_refused(kind, largest):
+    """R87: it would make an S/N above the dynamic range."""
+    stage = template(kind, "it", nominal_v={"text": "+24 dBu"}, **{largest: {"text": "+18 dBu"}})
+    assert "S/N would be above its dynamic range" in next(stage.check(stage.values(), None))

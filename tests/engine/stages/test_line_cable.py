@@ -11,7 +11,12 @@ from tests.engine.stages.alone import end, line, make, tone
 
 def test_600_ohm_into_300_m_of_cable():
     """30 nF behind 600 ohm: −3.01 dB at 8842 Hz, the RC low-pass, when its resistance is next to nothing."""
-    cable = make("line_cable", length_m="300 m", capacitance_f_per_m="100 pF/m", resistance_ohm_per_m="0.001 ohm/km loop")
+    cable = make(
+        "line_cable",
+        length_m="300 m",
+        capacitance_f_per_m="100 pF/m",
+        resistance_ohm_per_m="0.001 ohm/km loop",
+    )
     corner = 1.0 / (2.0 * math.pi * 600.0 * 30e-9)
     node = tone(corner, line("0 dBu", z_out_ohm="600 ohm"), cable, end()).node("line_cable", "out")
     assert node.level == pytest.approx(-3.0103, abs=1e-3)

@@ -9,7 +9,7 @@ from tests.engine.stages.alone import SILENT, line, make, row, solved
 VOLTS_2_83 = "2.8284271 V"
 
 
-def spl(level: str = VOLTS_2_83, **fields) -> float:
+def spl(level: str = VOLTS_2_83, **fields):
     return solved(line(level), make("loudspeaker", **fields)).node("loudspeaker", "out").level
 
 
@@ -20,7 +20,9 @@ def test_one_watt_against_2_83_volts():
 
 
 def test_an_unsaid_reference_is_an_interval():
-    out = solved(line(VOLTS_2_83), make("loudspeaker", sensitivity_spl="97 dB", z_ohm="4 ohm")).node("loudspeaker", "out")
+    out = solved(line(VOLTS_2_83), make("loudspeaker", sensitivity_spl="97 dB", z_ohm="4 ohm")).node(
+        "loudspeaker", "out"
+    )
     assert out.high["level"] - out.low["level"] == pytest.approx(3.01, abs=0.005)
 
 
@@ -42,13 +44,17 @@ def test_several_boxes(fields, gain_db, z):
 
 def test_why_it_is_87_to_90_at_the_mix_position():
     """S22: 98 dB 1 W/1 m, 500 W sine into 8 ohm, 20 m: 98.97 dB sine; 12 dB crest 90.0 average (63 W); compressed by 3 dB 87.0."""
-    amp = make("power_amplifier", rated_power_w=["500 W @ 8 ohm"], gain_db="30 dB", damping_factor=None, noise=SILENT)
+    amp = make(
+        "power_amplifier", rated_power_w=["500 W @ 8 ohm"], gain_db="30 dB", damping_factor=None, noise=SILENT
+    )
     clip_in = 38.24 - 30.0
     average = clip_in - (12.0 - 3.0103)
     for fields, expected in (({}, 89.98), ({"compression_db": "3 dB"}, 86.98)):
         speaker = make("loudspeaker", sensitivity_spl="98 dB 1 W/1 m", **fields)
         out = solved(line(f"{average} dBu"), amp, speaker)
-        assert out.node("loudspeaker", "out").level - 26.02 == pytest.approx(expected, abs=0.05)  # no air here
+        assert out.node("loudspeaker", "out").level - 26.02 == pytest.approx(
+            expected, abs=0.05
+        )  # no air here
         assert out.loudspeakers[0].average_w == pytest.approx(63.0, rel=0.02)
         assert out.loudspeakers[0].peak_w == pytest.approx(1000.0, rel=0.02)
 

@@ -16,7 +16,9 @@ def talker(level: str = "72 dB SPL", **fields):
 def test_presenter_at_72_db():
     """S05: −54.5 dBV/Pa at 72 dB SPL is −74.28 dBu, −35 dBV/Pa −54.78 dBu (with 94 dB for 1 Pa; here 93.98)."""
     for sensitivity, expected in (("-54.5 dBV/Pa", -74.28), ("-35 dBV/Pa", -54.78)):
-        node = solved(talker(), make("microphone", sensitivity_v_per_pa=sensitivity), end()).node("microphone", "out")
+        node = solved(talker(), make("microphone", sensitivity_v_per_pa=sensitivity), end()).node(
+            "microphone", "out"
+        )
         assert node.level == pytest.approx(expected + 94.0 - EXACT_94, abs=0.01)
 
 
@@ -44,7 +46,9 @@ def test_without_self_noise_it_has_the_thermal_noise_of_its_impedance():
 def test_into_1_5_kohm_a_200_ohm_microphone_loses_1_09_db():
     """S39: 20 log(1500 / 1700); its thermal noise falls as much, and the input adds none."""
     free = solved(talker(), make("microphone"), end()).node("microphone", "out")
-    held = solved(talker(), make("microphone"), make("feed", z_in_ohm="1.5 k", ein_v=None)).node("microphone", "out")
+    held = solved(talker(), make("microphone"), make("feed", z_in_ohm="1.5 k", ein_v=None)).node(
+        "microphone", "out"
+    )
     assert held.level - free.level == pytest.approx(-1.09, abs=0.005)
     assert held.noise - free.noise == pytest.approx(-1.09, abs=0.005)
 
@@ -60,7 +64,11 @@ def test_condenser_on_a_loud_source():
 
 def test_its_pad_raises_what_it_takes_and_leaves_its_noise():
     out = {
-        pad: solved(talker(), make("microphone", max_spl="130 dB SPL", pad_db="10 dB", self_noise_spl="15 dB(A)", pad=pad), end())
+        pad: solved(
+            talker(),
+            make("microphone", max_spl="130 dB SPL", pad_db="10 dB", self_noise_spl="15 dB(A)", pad=pad),
+            end(),
+        )
         for pad in (0.0, 1.0)
     }
     nodes = {pad: each.node("microphone", "out") for pad, each in out.items()}

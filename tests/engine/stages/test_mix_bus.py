@@ -44,13 +44,19 @@ def test_one_source_by_two_channels_adds_as_voltage():
     )  # fmt: skip
     ends = (("source", "a"), ("source", "b"), ("a", "mix_bus"), ("b", "mix_bus"))
     links = tuple(Link(id=f"{s}{t}", source=s, target=t) for s, t in ends)
-    assert evaluate(Project(stages=stages, links=links)).node("mix_bus", "out").level == pytest.approx(6.02, abs=0.005)
+    assert evaluate(Project(stages=stages, links=links)).node("mix_bus", "out").level == pytest.approx(
+        6.02, abs=0.005
+    )
 
 
 def test_the_residual_does_not_fall_with_the_fader_and_summing_noise_does():
     """S01: the mixer's residual stays; what stands ahead of the fader moves with it."""
     for fader in (0.0, -30.0):
         bus = {"fader_db": fader, "residual": "-86 dBu unweighted", "summing_noise": SILENT}
-        assert solved(line("0 dBu"), make("mix_bus", **{**BUS, **bus}), end()).node("mix_bus", "out").noise == pytest.approx(-86.0, abs=1e-3)
+        assert solved(line("0 dBu"), make("mix_bus", **{**BUS, **bus}), end()).node(
+            "mix_bus", "out"
+        ).noise == pytest.approx(-86.0, abs=1e-3)
         bus = {"fader_db": fader, "residual": SILENT, "summing_noise": "-86 dBu unweighted"}
-        assert solved(line("0 dBu"), make("mix_bus", **{**BUS, **bus}), end()).node("mix_bus", "out").noise == pytest.approx(-86.0 + fader, abs=1e-3)
+        assert solved(line("0 dBu"), make("mix_bus", **{**BUS, **bus}), end()).node(
+            "mix_bus", "out"
+        ).noise == pytest.approx(-86.0 + fader, abs=1e-3)

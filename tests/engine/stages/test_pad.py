@@ -28,13 +28,19 @@ def test_a_consumer_input_behind_a_console():
 
 
 def test_two_equal_pads_are_one():
-    one = solved(line("0 dBu"), make("pad", "a", loss_db="20 dB", z_ohm="600 ohm", shape="H"), make("feed", z_in_ohm="600 ohm", ein_v=None))
+    one = solved(
+        line("0 dBu"),
+        make("pad", "a", loss_db="20 dB", z_ohm="600 ohm", shape="H"),
+        make("feed", z_in_ohm="600 ohm", ein_v=None),
+    )
     two = solved(
         line("0 dBu"), make("pad", "a", loss_db="10 dB", z_ohm="600 ohm", shape="H"),
         make("pad", "b", loss_db="10 dB", z_ohm="600 ohm", shape="H"), make("feed", z_in_ohm="600 ohm", ein_v=None),
     )  # fmt: skip
     for name in ("level",):
-        assert getattr(two.node("feed", "in"), name) == pytest.approx(getattr(one.node("feed", "in"), name), abs=1e-9)
+        assert getattr(two.node("feed", "in"), name) == pytest.approx(
+            getattr(one.node("feed", "in"), name), abs=1e-9
+        )
 
 
 def test_behind_a_stiff_source_its_noise_is_that_of_its_output_resistance():

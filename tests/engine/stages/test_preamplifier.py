@@ -31,14 +31,21 @@ def test_the_input_clips_ahead_of_the_gain():
 def test_ein_without_its_source_and_the_real_source_again():
     """A 150 ohm source and EIN −127 dBu (150 ohm): output noise at 60 dB is −67 dBu, thermal part counted once."""
     source = line("-60 dBu", z_out_ohm="150 ohm", noise=None)
-    out = solved(source, make("preamplifier", gain_db=60.0, ein_v=["-127 dBu, 150 ohm, unweighted"], **QUIET), end())
+    out = solved(
+        source, make("preamplifier", gain_db=60.0, ein_v=["-127 dBu, 150 ohm, unweighted"], **QUIET), end()
+    )
     assert out.node("preamplifier", "out").noise == pytest.approx(-67.0, abs=0.005)
 
 
 def test_condenser_into_a_preamplifier():
     """S05: microphone −108.78 and preamplifier −129.05 dBu(A) come to −108.74: the preamplifier costs 0.04 dB."""
     mic = make("microphone", sensitivity_v_per_pa="-35 dBV/Pa", self_noise_spl="18 dB(A)", z_ohm="150 ohm")
-    out = solved(make("sound_source"), mic, make("preamplifier", gain_db=55.0, ein_v=["-127 dBu, 150 ohm, unweighted"], **QUIET), end())
+    out = solved(
+        make("sound_source"),
+        mic,
+        make("preamplifier", gain_db=55.0, ein_v=["-127 dBu, 150 ohm, unweighted"], **QUIET),
+        end(),
+    )
     added = out.node("preamplifier", "out").noise_a - 55.0 - out.node("microphone", "out").noise_a
     assert added == pytest.approx(0.04, abs=0.02)
 
@@ -54,7 +61,9 @@ def test_ein_over_gain_is_interpolated():
     """−127 dBu at 60 dB and −107 dBu at 20 dB (both far above thermal of a short): −117 dBu at 40 dB."""
     points = ["-107 dBu, 0 ohm, unweighted", "-87 dBu, 0 ohm, unweighted @ 20 dB"]
     stage = make("preamplifier", gain_db=40.0, ein_v=points, **QUIET)
-    assert solved(line("-60 dBu"), stage, end()).node("preamplifier", "out").noise == pytest.approx(-97.0 + 40.0, abs=0.01)
+    assert solved(line("-60 dBu"), stage, end()).node("preamplifier", "out").noise == pytest.approx(
+        -97.0 + 40.0, abs=0.01
+    )
 
 
 def test_with_the_pad_in_ein_still_holds():

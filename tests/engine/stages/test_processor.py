@@ -50,12 +50,16 @@ def test_input_trim_cannot_mend_the_ad_converters_clip():
 
 def test_digital_gain_is_caught_by_the_da_converter():
     """+12 dB of trim: the D/A converter's input passes full scale 12 dB earlier."""
-    assert out("+10 dBu", trim_1_db=12.0).node("processor", "in").ceiling == pytest.approx(24.0 - 12.0 - (12.0 - 3.0103), abs=1e-3)
+    assert out("+10 dBu", trim_1_db=12.0).node("processor", "in").ceiling == pytest.approx(
+        24.0 - 12.0 - (12.0 - 3.0103), abs=1e-3
+    )
 
 
 def test_crossover_outputs_have_their_own_filters_and_trims():
     """24 dB/oct Linkwitz–Riley at 100 Hz: both outputs −6.02 dB there; each trim moves its own output only."""
-    stage = make("processor", outputs_fitted=2, low_pass_1_hz="100 Hz", high_pass_2_hz="100 Hz", trim_2_db=-3.0, **BOX).with_fields(column=1)
+    stage = make(
+        "processor", outputs_fitted=2, low_pass_1_hz="100 Hz", high_pass_2_hz="100 Hz", trim_2_db=-3.0, **BOX
+    ).with_fields(column=1)
     assert [port.name for port in stage.outputs()] == ["out", "out_2"]
     ends = (end("low").with_fields(column=2), end("high").with_fields(column=2))
     links = (
@@ -75,13 +79,20 @@ def test_peak_limiter_cuts_the_peaks_alone():
 
 def test_rms_limiter_holds_the_programme():
     """S09's threshold of −16.77 dBFS on +20 dBu of full scale is +3.23 dBu, whatever comes in."""
-    fields = {"limiter_1": 1.0, "limit_rms_1_dbfs": -16.8, "input_full_scale_v": "+20 dBu", "output_full_scale_v": "+20 dBu"}
+    fields = {
+        "limiter_1": 1.0,
+        "limit_rms_1_dbfs": -16.8,
+        "input_full_scale_v": "+20 dBu",
+        "output_full_scale_v": "+20 dBu",
+    }
     for level in ("+10 dBu", "+16 dBu"):
         assert out(level, **fields).node("processor", "out").level == pytest.approx(3.2, abs=1e-3)
 
 
 def test_limiters_out_of_circuit_do_nothing():
-    assert out("+12 dBu", limiter_1=0.0, limit_rms_1_dbfs=-40.0).node("processor", "out").level == pytest.approx(12.0, abs=1e-6)
+    assert out("+12 dBu", limiter_1=0.0, limit_rms_1_dbfs=-40.0).node(
+        "processor", "out"
+    ).level == pytest.approx(12.0, abs=1e-6)
 
 
 def test_equaliser_and_controls_in_signal_order():
@@ -91,7 +102,11 @@ def test_equaliser_and_controls_in_signal_order():
     assert names[-1] == "output_range"
     assert names.index("bell_1_db") < names.index("trim_1_db") < names.index("limiter_2")
     assert "trim_3_db" not in names
-    level = tone(1000.0, line("0 dBu"), make("processor", bell_1_hz="1 kHz", bell_1_db=6.0, **BOX), end()).node("processor", "out").level
+    level = (
+        tone(1000.0, line("0 dBu"), make("processor", bell_1_hz="1 kHz", bell_1_db=6.0, **BOX), end())
+        .node("processor", "out")
+        .level
+    )
     assert level == pytest.approx(6.0, abs=1e-6)
 
 

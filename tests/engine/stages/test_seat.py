@@ -13,7 +13,9 @@ SPEAKER = {"sensitivity_spl": "98 dB 2.83 V/1 m", "z_ohm": "8 ohm"}
 
 
 def level(distance: str, **fields) -> float:
-    out = tone(250.0, line("2.8284271 V"), make("loudspeaker", **SPEAKER), make("seat", **fields), seat=distance)
+    out = tone(
+        250.0, line("2.8284271 V"), make("loudspeaker", **SPEAKER), make("seat", **fields), seat=distance
+    )
     return float(out.seats[0].level)
 
 
@@ -26,7 +28,9 @@ def test_inverse_square():
 def test_air_takes_the_top_off():
     """ISO 9613-1 at 20 °C and 50 %: 100 m cost about 15.9 dB more at 10 kHz than at 100 Hz (formula, 0.159 dB/m)."""
     out = solved(line("1 V", spectrum="white"), make("loudspeaker", **SPEAKER), make("seat"), seat="101 m")
-    shares = out.seats[0].level_bands / np.diff([20, *[1000 * 10 ** ((n - 16.5) / 10) for n in range(30)], 20000])
+    shares = out.seats[0].level_bands / np.diff(
+        [20, *[1000 * 10 ** ((n - 16.5) / 10) for n in range(30)], 20000]
+    )
     assert 10.0 * np.log10(shares[7] / shares[27]) == pytest.approx(15.9, abs=0.4)
 
 
@@ -36,7 +40,13 @@ def test_off_axis_loss_is_the_links():
     )  # fmt: skip
     links = (
         Link(id="a", source="source", target="loudspeaker"),
-        Link(id="b", source="loudspeaker", target="seat", distance_m={"text": "1 m"}, off_axis_db={"text": "6 dB"}),
+        Link(
+            id="b",
+            source="loudspeaker",
+            target="seat",
+            distance_m={"text": "1 m"},
+            off_axis_db={"text": "6 dB"},
+        ),
     )
     assert evaluate(Project(stages=stages, links=links)).seats[0].level == pytest.approx(92.0, abs=0.01)
 
@@ -57,14 +67,18 @@ def test_room_constant_from_volume_and_reverberation_time():
 
 @pytest.mark.parametrize(("adds", "expected"), [("power", 3.01), ("coherent", 6.02)])
 def test_two_loudspeakers(adds, expected):
-    boxes = [make("powered_loudspeaker", name, noise_spl="30 dB(A)").with_fields(column=1) for name in ("a", "b")]
+    boxes = [
+        make("powered_loudspeaker", name, noise_spl="30 dB(A)").with_fields(column=1) for name in ("a", "b")
+    ]
     stages = (line("0 dBu"), *boxes, make("seat", adds=adds).with_fields(column=2))
     links = [Link(id=f"s{b.id}", source="source", target=b.id) for b in boxes]
     links += [Link(id=f"t{b.id}", source=b.id, target="seat", distance_m={"text": "1 m"}) for b in boxes]
     both = evaluate(Project(stages=stages, links=tuple(links))).seats[0]
     one = evaluate(Project(stages=stages, links=(links[0], links[2]))).seats[0]
     assert both.level - one.level == pytest.approx(expected, abs=0.005)
-    assert both.hiss - one.hiss == pytest.approx(3.01, abs=0.02)  # each box's own hiss is an origin of its own
+    assert both.hiss - one.hiss == pytest.approx(
+        3.01, abs=0.02
+    )  # each box's own hiss is an origin of its own
 
 
 def test_a_room_needs_its_figures():

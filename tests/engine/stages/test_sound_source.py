@@ -17,7 +17,10 @@ def test_level_and_peak():
 def test_moving_from_0_6_to_0_15_m_gives_12_db():
     """S05: inverse square, 20 log 4 = 12.04 dB."""
     talker = make("sound_source", level_spl="72 dB SPL", stated_at_m="0.6 m")
-    near, far = (solved(talker, make("microphone"), microphone=d).node("microphone", "in").level for d in ("0.15 m", "0.6 m"))
+    near, far = (
+        solved(talker, make("microphone"), microphone=d).node("microphone", "in").level
+        for d in ("0.15 m", "0.6 m")
+    )
     assert far == pytest.approx(72.0, abs=1e-9)
     assert near - far == pytest.approx(12.04, abs=0.01)
 
@@ -43,4 +46,6 @@ def test_a_test_tone_is_a_sine():
 
 def test_own_bands_must_fit_the_bands():
     stage = make("sound_source", spectrum="own bands", own_bands_db=["60 dB"] * 5)
-    assert list(stage.check(stage.values(), row(stage).axis())) == ["Own bands of Sound source hold 5 levels: give 31, 10 or 8"]
+    assert list(stage.check(stage.values(), row(stage).axis())) == [
+        "Own bands of Sound source hold 5 levels: give 31, 10 or 8"
+    ]
