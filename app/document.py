@@ -92,7 +92,10 @@ class Document(QObject):
 
     @property
     def outcome(self) -> Outcome:
-        """The project as it was last solved: up to one frame behind `project`; `flush` brings them together."""
+        """The project as it was last solved: it has the stages of `project`, their levels up to one frame late.
+
+        While `changed` is being announced it may lack a stage; listen to `solved` for levels.
+        """
         return self._outcome
 
     @property
@@ -129,10 +132,11 @@ class Document(QObject):
             if self._project.item(key) != before:
                 raise ValueError("This was changed in the meantime. Look again, then repeat it.")
         result = self._project.with_changes(changes)
-        if any(before is None or after is None for before, after in changes.values()):
+        if _adds_or_takes_away(changes):
             self._tried = evaluate(result)  # a ring of passive stages shows only here
         self._gesture_open = gesture is not None
         token = None if gesture is None else (gesture, self._gesture_number)
+        self._gesture_open = gesture is not None
         self.undo_stack.push(Edit(self, title, changes, token))
         return True
 
@@ -168,6 +172,8 @@ class Document(QObject):
         self._note_modified()
         if not self._frame.isActive():  # a throttle: never restarted, or a flood would starve it
             self._frame.start()
+        if _adds_or_takes_away(changes):
+            self.flush()  # who selects a new stage next finds its levels
 
     # -- solving ---------------------------------------------------------------------------------------------
     def flush(self) -> None:
@@ -211,6 +217,7 @@ class Document(QObject):
         self._path, self._saved = path, saved or project
         self._tried = tried
         self._gesture_number += 1
+        self._gesture_open = False
         self.undo_stack.clear()
         self.select(())
         self._announce(project, difference(self._project, project))
@@ -244,3 +251,7 @@ class Document(QObject):
         if always or modified != self._modified:
             self._modified = modified
             self.file_changed.emit()
+
+
+def _adds_or_takes_away(changes: Mapping[str, tuple[object, object]]) -> bool:
+    return any(before is None or after is None for before, after in changes.values())

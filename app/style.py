@@ -72,7 +72,9 @@ def sheet(inks: Inks, density: Density = POINTER) -> str:
     return f"""
 QMainWindow, QDialog, QWidget#panel, QScrollArea, QScrollArea > QWidget > QWidget {{ background: {paper}; }}
 QToolTip {{ background: {raised}; color: {ink}; border: 1px solid {hairline}; padding: 4px 6px; }}
-QMenuBar {{ background: {paper}; color: {ink}; border-bottom: 1px solid {hairline}; padding: 2px 12px; }}
+QWidget#topLine {{ background: {paper}; border-bottom: 1px solid {hairline}; }}
+QWidget#notice {{ background: {tint}; border-bottom: 1px solid {hairline}; }}
+QMenuBar {{ background: transparent; color: {ink}; padding: 0; }}
 QMenuBar::item {{ padding: 4px 8px; border-radius: {CORNER_PX}px; background: transparent; }}
 QMenuBar::item:selected {{ background: {hover}; }}
 QMenu {{ background: {raised}; color: {ink}; border: 1px solid {hairline}; padding: 4px; }}

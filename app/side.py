@@ -1,0 +1,59 @@
+"""The right side: the stage card, the chart by band under it, and what the tool has noticed."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QSize, Qt
+from PySide6.QtWidgets import QSplitter, QVBoxLayout, QWidget
+
+from .card import StageCard
+from .document import Document
+from .findings_list import FindingsList
+from .inks import Inks
+
+WIDTH_PX = 300
+CHART_PX, FINDINGS_PX = 180, 190
+
+
+class Side(QWidget):
+    """Card, chart and findings; the chart comes when the first frame is painted, for it takes long to load."""
+
+    def __init__(self, document: Document, inks: Inks, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document, self._inks = document, inks
+        self.card = StageCard(document, inks)
+        self.findings = FindingsList(document, inks)
+        self.chart: QWidget | None = None
+        self.splitter = QSplitter(Qt.Orientation.Vertical)
+        self.splitter.setHandleWidth(1)
+        self.splitter.setChildrenCollapsible(False)
+        self.splitter.addWidget(self.card)
+        self.splitter.addWidget(self.findings)
+        self.splitter.setStretchFactor(0, 1)
+        self.splitter.setStretchFactor(1, 0)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.addWidget(self.splitter)
+        self.setMinimumWidth(240)
+
+    def sizeHint(self) -> QSize:
+        return QSize(WIDTH_PX, 600)
+
+    def add_chart(self) -> None:
+        """Load the chart by band and set it between card and findings."""
+        if self.chart is not None:
+            return
+        from .charts import BandChart
+
+        self.chart = BandChart(self._document, self._inks)
+        self.splitter.insertWidget(1, self.chart)
+        self.splitter.setStretchFactor(1, 0)
+        room = self.splitter.height() - CHART_PX - FINDINGS_PX
+        self.splitter.setSizes([room, CHART_PX, FINDINGS_PX])
+
+    def set_inks(self, inks: Inks) -> None:
+        """Show in other colours."""
+        self._inks = inks
+        self.card.set_inks(inks)
+        self.findings.set_inks(inks)
+        if self.chart is not None:
+            self.chart.set_inks(inks)  # type: ignore[attr-defined]
