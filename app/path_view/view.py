@@ -351,7 +351,7 @@ class PathView(QWidget):
             self.document.selection if hit.id in self.document.selection else frozenset({hit.id} - {""}),
         )
         menu = build_menu(self, hit, self.place(x, y))
-        menu.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        menu.aboutToHide.connect(menu.deleteLater)
         menu.popup(at)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:

@@ -5,6 +5,8 @@ They are put beside the real ones, so that these tests hold whatever kinds the p
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+from contextlib import contextmanager
 from typing import ClassVar, Literal
 
 from engine.figures import Figure
@@ -153,7 +155,17 @@ class Chair(Stage):
 
 SIMPLE = {str(kind.model_fields["kind"].default): kind for kind in
           (Talker, Capsule, Gain, Summing, Divider, Stream, Horn, Chair)}  # fmt: skip
-KINDS.update(SIMPLE)  # type: ignore[attr-defined]
+
+
+@contextmanager
+def simple_kinds() -> Iterator[None]:
+    """Put these kinds beside the real ones for a while."""
+    KINDS.update(SIMPLE)  # type: ignore[attr-defined]
+    try:
+        yield
+    finally:
+        for kind in SIMPLE:
+            del KINDS[kind]  # type: ignore[attr-defined]
 
 
 def chain(*kinds: str) -> Project:

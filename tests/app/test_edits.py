@@ -11,7 +11,13 @@ from hypothesis import strategies as st
 from app import edits
 from engine.project import HEADER_KEY, Changes, Project, difference
 from engine.topology import CountError, CycleError, DomainError, DoubleLinkError, LinkError, PortError
-from tests.app.simple_kinds import SIMPLE, Gain, chain, ends, link_between, places
+from tests.app.simple_kinds import SIMPLE, Gain, chain, ends, link_between, places, simple_kinds
+
+
+@pytest.fixture(scope="module", autouse=True)
+def _kinds():
+    with simple_kinds():
+        yield
 
 
 def applied(project: Project, changes: Changes) -> Project:
