@@ -55,16 +55,17 @@ class Solution:
 def solve(graph: Graph, rows: Rows, axis: Axis) -> Solution:
     """All levels of a project. A single solve is a batch of one."""
     batch, width = rows.gain.shape[1:]
-    spectra = np.zeros((graph.size, LANES, batch, width))
-    spectra[graph.emitting, :NOISE] = rows.emitted
+    spectra = np.empty((graph.size, LANES, batch, width))
+    spectra[0] = 0.0  # silence
     factors: dict[int, Array] = {}
     noise, gain = rows.noise, rows.gain[:, None]
-    for rank in graph.ranks:
+    for place, rank in enumerate(graph.ranks):
         at = rank.singles
         if at.stop > at.start:
             inside = spectra[at]
-            # Sources stand among the singles with silence for a parent, so what they emit is kept.
-            inside += spectra[rank.parents] * gain[at]
+            np.multiply(spectra[rank.parents], gain[at], out=inside)
+            if not place:  # sources hear silence, so all of them stand in the first rank
+                spectra[graph.emitting, :NOISE] = rows.emitted
             inside[:, NOISE] += noise[at]
         at = rank.joins
         if at.stop > at.start:

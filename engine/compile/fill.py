@@ -69,8 +69,9 @@ class Table:
         self.noise[row] = 0.0
         kept = []
         for origin, power in parts:
-            spectrum = np.broadcast_to(np.asarray(power, dtype=float), self.noise[row].shape)
-            if spectrum.any():
+            given = np.asarray(power, dtype=float)
+            if given.any():
+                spectrum = np.broadcast_to(given, self.noise[row].shape)
                 self.noise[row] += spectrum
                 kept.append(NoisePart(origin, spectrum))
         self.parts[row] = tuple(kept)
@@ -98,6 +99,7 @@ def fill_stage(
         )
         if section.dynamics is not None:
             table.dynamics[row] = section.dynamics
+        table.clip_weight.pop(row, None)
         if section.clip_weight is not None:
             table.clip_weight[row] = section.clip_weight
     if answer.emission is not None:

@@ -116,6 +116,28 @@ def build_plan(
     graph, place = rank_rows(layout.draft, emitting, frozenset(layout.dynamic))
     of, starts, beyond = find_beyond(layout.nets, place)
     graph = replace(graph, beyond_of=of, beyond_starts=starts, beyond_rows=beyond)
+    rows = _filled(project, axis, graph, layout, place, answers, overrides, batch)
+    nodes = tuple(_nodes(project, answers, layout, place))
+    return Plan(project, axis, graph, rows, answers, layout, place, nodes, _places(nodes), overrides, batch)
+
+
+def redrawn(plan: Plan, overrides: Mapping[str, Values], batch: int) -> Plan:
+    """The same project with other values in place of some stages' (or links') own, arrays [batch, 1]; its graph stays.
+
+    Raises ValueError where a stage answers with other sections than before.
+    """
+    fresh = {key: _answer(plan.project, key, plan.axis, overrides) for key in plan.answers}
+    for key, answer in fresh.items():
+        if _shape(answer) != _shape(plan.answers[key]):
+            raise ValueError(f"{key}: other values make other sections, so the project has to be compiled anew")
+    rows = _filled(plan.project, plan.axis, plan.graph, plan.layout, plan.place, fresh, overrides, batch)
+    return replace(plan, rows=rows, answers=fresh, overrides=dict(overrides), batch=batch)
+
+
+def _filled(
+    project: Project, axis: Axis, graph: Graph, layout: Layout, place: Index,
+    answers: Mapping[str, StageSections], overrides: Mapping[str, Values], batch: int,
+) -> Rows:  # fmt: skip
     table = Table.empty(graph, batch, axis)
     for stage in answers:
         fill_stage(table, layout, place, answers, stage, axis)
@@ -124,10 +146,7 @@ def build_plan(
         fill_clip_by_load(table, layout, net, place, project, answers)
     fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
     fill_pairs(table, graph)
-    nodes = tuple(_nodes(project, answers, layout, place))
-    return Plan(
-        project, axis, graph, table.rows(), answers, layout, place, nodes, _places(nodes), overrides, batch
-    )
+    return table.rows()
 
 
 def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | None:
@@ -154,13 +173,15 @@ def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | No
     for key in stages:
         fill_stage(table, plan.layout, plan.place, answers, key, plan.axis)
     for net in plan.layout.nets:
-        if net.shape.stages & changed and any(
+        if not net.shape.stages & changed:
+            continue
+        # A link that costs clip point carries its driver's along.
+        if net.shape.clip_scale or any(
             key in net.shape.stages and _impedances(answers[key]) != _impedances(plan.answers[key])
             for key in stages
         ):
             fill_net(table, net, plan.place, project, answers, plan.axis)
-        if net.shape.stages & changed:
-            fill_clip_by_load(table, plan.layout, net, plan.place, project, answers)
+        fill_clip_by_load(table, plan.layout, net, plan.place, project, answers)
     near = {
         link.id for link in project.links if link.id in changed or link.target in changed or link.source in changed
     }  # fmt: skip
@@ -210,10 +231,7 @@ def _impedances(answer: StageSections) -> object:
             for term in (two.a, two.b, two.c, two.d)
         ]
     impedances = [port.z_ohm for port in answer.inputs.values()] + [port.z_ohm for port in answer.outputs.values()]
-    # A link that costs clip point carries the driver's along.
-    ends = {port.section for port in answer.outputs.values()}
-    clips = [section.clip_out for section in answer.sections if section.name in ends]
-    return [np.asarray(number).tobytes() for number in (*impedances, *clips)]
+    return [np.asarray(number).tobytes() for number in impedances]
 
 
 def _nodes(
@@ -266,4 +284,4 @@ def _section(
     raise ValueError(f"stage {key!r} names a section {name!r} it does not have")
 
 
-__all__ = ["NodeRef", "NoisePart", "Plan", "build_plan", "rewritten"]
+__all__ = ["NodeRef", "NoisePart", "Plan", "build_plan", "redrawn", "rewritten"]

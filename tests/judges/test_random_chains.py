@@ -61,7 +61,7 @@ class Draw:
         if self.random.random() < 0.5:
             self._put(source(name, emf=level, z=self._ohm(20.0, 2000.0)), [], "out")
             return
-        noise = self.random.choice([None, Figure(text="90 dB(A) re max"), Figure(text="80 dB re nominal")])
+        noise = self.random.choice([None, Figure(text="90 dB(A) re max"), Figure(text="80 dB re nominal unweighted")])
         drawn = template(
             "line_source", name, nominal_v=Figure(text=level), max_output_v=Figure(text="5 V"), noise=noise,
             z_out_ohm=Figure(text=self._ohm(20.0, 2000.0)), level_switch=Setting(value=self.random.choice([0.0, 1.0])),

@@ -23,8 +23,8 @@ def loaded_chain():
         [
             source("source", emf="1 mV", z="150 ohm"),
             amplifier("first", 1, 40.0, z_in="1800 ohm", z_out="600 ohm", noise=f"{one_nv:.15f} V"),
-            amplifier("second", 2, times_20_db, noise="0 V"),
-            amplifier("beside", 2, 0.0, noise="0 V"),
+            amplifier("second", 2, times_20_db, noise="0.000001 nV"),
+            amplifier("beside", 2, 0.0, noise="0.000001 nV"),
         ],
         ("source", "first"),
         ("first", "second"),
