@@ -36,6 +36,9 @@ class Layout:
         self.project = project
         self.columns = columns
         self.top_px = top_px
+        self._seen: tuple[float, float, float] | None = None
+        self._boxes: dict[str, Box] = {}
+        self._lines: dict[str, tuple[Point, ...]] = {}
 
     @property
     def scale(self) -> RowScale:
@@ -71,13 +74,24 @@ class Layout:
 
     def box(self, key: str) -> Box:
         """A stage's block."""
-        stage = self.project.stage[key]
-        return self.cell(stage.column, stage.row)
+        self._forget_if_moved()
+        found = self._boxes.get(key)
+        if found is None:
+            stage = self.project.stage[key]
+            found = self._boxes[key] = self.cell(stage.column, stage.row)
+        return found
+
+    def _forget_if_moved(self) -> None:
+        """What was worked out holds until zoom or scroll."""
+        now = (self.columns.pitch_px, self.columns.x_in(0), self.top_px)
+        if now != self._seen:
+            self._seen = now
+            self._boxes, self._lines = {}, {}
 
     def port(self, key: str, name: str, *, is_output: bool) -> Point:
         """Where a port sits on its block's edge."""
         stage = self.project.stage[key]
-        left, top, width, height = self.cell(stage.column, stage.row)
+        left, top, width, height = self.box(key)
         share = port_share(stage.outputs() if is_output else stage.inputs(), name)
         return left + width if is_output else left, top + height / 2.0 * (1.0 + share)
 
@@ -108,6 +122,13 @@ class Layout:
 
     def line(self, link: Link) -> tuple[Point, ...]:
         """A link's corners from its output to its input."""
+        self._forget_if_moved()
+        found = self._lines.get(link.id)
+        if found is None:
+            found = self._lines[link.id] = self._drawn(link)
+        return found
+
+    def _drawn(self, link: Link) -> tuple[Point, ...]:
         start = self.port(link.source, link.output, is_output=True)
         end = self.port(link.target, link.input, is_output=False)
         route = self.routes[link.id]

@@ -73,8 +73,13 @@ def _add(menu: QMenu, text: str, key: str, run: Callable[[], object], *, enabled
 def _kinds(
     menu: QMenu, text: str, run: Callable[[str], None], may_be: Callable[[str], Changes] | None
 ) -> None:
-    """A submenu of the kinds that fit, family by family."""
+    """A submenu of the kinds that fit, family by family; worked out when it opens."""
     below = menu.addMenu(text)
+    below.aboutToShow.connect(partial(_fill, below, run, may_be))
+
+
+def _fill(below: QMenu, run: Callable[[str], None], may_be: Callable[[str], Changes] | None) -> None:
+    below.clear()
     for family, kinds in families().items():
         fitting = [kind for kind in kinds if may_be is None or _fits(may_be, kind_of(kind))]
         if fitting:
@@ -83,7 +88,8 @@ def _kinds(
             action = below.addAction(kind.title)
             action.setToolTip(kind.help)
             action.triggered.connect(partial(_run, run, kind_of(kind)))
-    below.menuAction().setEnabled(not below.isEmpty())
+    if below.isEmpty():
+        below.addAction("Nothing fits here").setEnabled(False)
 
 
 def _run(run: Callable[[str], None], kind: str, _checked: bool = False) -> None:

@@ -160,12 +160,12 @@ SIMPLE = {str(kind.model_fields["kind"].default): kind for kind in
 @contextmanager
 def simple_kinds() -> Iterator[None]:
     """Put these kinds beside the real ones for a while."""
-    KINDS.update(SIMPLE)  # type: ignore[attr-defined]
+    KINDS.update(SIMPLE)
     try:
         yield
     finally:
         for kind in SIMPLE:
-            del KINDS[kind]  # type: ignore[attr-defined]
+            del KINDS[kind]
 
 
 def chain(*kinds: str) -> Project:

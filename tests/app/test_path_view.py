@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 from PySide6.QtCore import QPoint, QPointF, Qt
-from PySide6.QtGui import QContextMenuEvent, QGuiApplication, QWheelEvent
+from PySide6.QtGui import QAction, QContextMenuEvent, QGuiApplication, QWheelEvent
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QLineEdit, QMenu
 
@@ -281,6 +281,14 @@ def menu_at(bench: Bench, at: QPoint) -> QMenu:
     return bench.path.findChildren(QMenu, options=Qt.FindChildOption.FindDirectChildrenOnly)[-1]
 
 
+def submenu(menu: QMenu, text: str) -> dict[str, QAction]:
+    """The lines of a submenu, as if it had just been opened."""
+    below = next(action for action in menu.actions() if action.text() == text).menu()
+    assert isinstance(below, QMenu)
+    below.aboutToShow.emit()
+    return {action.text(): action for action in below.actions()}
+
+
 @pytest.fixture
 def no_popup(monkeypatch):
     """The offscreen platform cannot raise a menu: leave it unshown."""
@@ -296,9 +304,7 @@ def test_the_context_menu_offers_only_kinds_that_fit(chain):
     assert "Delete link" in names
     menu = menu_at(chain, chain.middle("preamplifier"))
     assert chain.selected == {"preamplifier"}
-    behind = next(action for action in menu.actions() if action.text() == "Add behind").menu()
-    assert isinstance(behind, QMenu)
-    offered = {action.text(): action for action in behind.actions()}
+    offered = submenu(menu, "Add behind")
     assert "Seat" not in offered
     offered["Equaliser"].trigger()
     assert ("preamplifier", "equaliser") in ends(chain.project)
@@ -306,19 +312,10 @@ def test_the_context_menu_offers_only_kinds_that_fit(chain):
 
 @pytest.mark.usefixtures("no_popup")
 def test_the_menu_of_a_link_changes_its_wiring_and_the_menu_of_the_ground_adds(chain):
-    wiring = next(
-        a
-        for a in menu_at(chain, chain.on_link("mix_bus", "power_amplifier")).actions()
-        if a.text() == "Wiring"
-    )
-    below = wiring.menu()
-    assert isinstance(below, QMenu)
-    next(action for action in below.actions() if action.text() == "One leg").trigger()
+    wiring = submenu(menu_at(chain, chain.on_link("mix_bus", "power_amplifier")), "Wiring")
+    wiring["One leg"].trigger()
     assert [link.wiring for link in chain.project.links].count("one leg") == 1
-    ground = menu_at(chain, chain.cell(3, 2))
-    below = ground.actions()[0].menu()
-    assert isinstance(below, QMenu)
-    next(action for action in below.actions() if action.text() == "Mixer channel").trigger()
+    submenu(menu_at(chain, chain.cell(3, 2)), "Add here")["Mixer channel"].trigger()
     assert places(chain.project)["mixer_channel"] == (3, 2)
 
 
@@ -345,3 +342,50 @@ def test_a_new_user_is_told_in_one_sentence_what_to_do(bench):
     empty = bench.path.grab().toImage()
     bench.build("mix_bus")
     assert bench.path.grab().toImage() != empty
+
+
+# -- fingers -------------------------------------------------------------------------------------------------
+
+
+@pytest.fixture(scope="module")
+def finger(qapp):
+    return QTest.createTouchDevice()
+
+
+def stroke(bench: Bench, finger, *points: QPoint) -> None:
+    """One finger comes down, goes along and is lifted."""
+    QTest.touchEvent(bench.path, finger).press(0, points[0], bench.path).commit()
+    for at in points[1:]:
+        QTest.touchEvent(bench.path, finger).move(0, at, bench.path).commit()
+    QTest.touchEvent(bench.path, finger).release(0, points[-1], bench.path).commit()
+
+
+def test_a_finger_selects_and_moves_a_block_and_pans_the_ground(chain, finger):
+    stroke(chain, finger, chain.middle("mix_bus"))
+    assert chain.selected == {"mix_bus"}
+    stroke(chain, finger, chain.middle("mix_bus"), chain.middle("mix_bus") + QPoint(0, 30), chain.cell(2, 1))
+    assert places(chain.project)["mix_bus"] == (2, 1)
+    chain.document.edit("Add", edits.add_stage(chain.project, "mix_bus", 30, 1))
+    ground = chain.cell(3, 4)
+    stroke(chain, finger, ground, ground - QPoint(20, 0), ground - QPoint(90, 0))
+    assert chain.columns.scroll_px == 90
+    assert chain.selected == {"mix_bus"}
+
+
+def test_two_fingers_pinch_to_zoom(chain, finger):
+    before = chain.columns.pitch_px
+    a, b = QPoint(200, 200), QPoint(300, 200)
+    QTest.touchEvent(chain.path, finger).press(0, a, chain.path).press(1, b, chain.path).commit()
+    for spread in (60, 50):
+        pair = QTest.touchEvent(chain.path, finger)
+        pair.move(0, a, chain.path).move(1, a + QPoint(spread, 0), chain.path).commit()
+    QTest.touchEvent(chain.path, finger).release(0, a, chain.path).release(1, b, chain.path).commit()
+    assert chain.columns.pitch_px == pytest.approx(before * 50 / 60)
+
+
+@pytest.mark.usefixtures("no_popup")
+def test_a_finger_that_rests_opens_the_menu(chain, finger, qtbot):
+    QTest.touchEvent(chain.path, finger).press(0, chain.middle("mix_bus"), chain.path).commit()
+    qtbot.waitUntil(lambda: bool(chain.path.findChildren(QMenu)))
+    QTest.touchEvent(chain.path, finger).release(0, chain.middle("mix_bus"), chain.path).commit()
+    assert chain.selected == {"mix_bus"}
