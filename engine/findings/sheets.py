@@ -10,23 +10,30 @@ from .registry import Finding, finder
 if TYPE_CHECKING:
     from engine.outcome import Outcome
 
+TOGETHER = 3  # stages whose guesses are told one by one
+
 
 @finder
 def figures_still_guesses(outcome: Outcome) -> Iterator[Finding]:
-    """Stages whose figures nobody has taken from a sheet or measured."""
-    for stage in outcome.project.stages:
-        guessed = [spec.label for _, spec, given in stage.figures() if given.origin == "guess"]
-        if guessed:
-            number = (
-                "1 figure is still a guess"
-                if len(guessed) == 1
-                else f"{len(guessed)} figures are still guesses"
-            )
-            named = ", ".join(guessed[:3]) + (" …" if len(guessed) > 3 else "")
-            yield Finding(
-                "note", "still-a-guess", stage.id, f"{number} at {stage.name}: {named}.",
-                "Type them from the data sheet or measure them, and mark where they came from.",
-            )  # fmt: skip
+    """Figures that nobody has taken from a sheet or measured, told together where many stages have them."""
+    guessed = {
+        stage: [spec.label for _, spec, given in stage.figures() if given.origin == "guess"]
+        for stage in outcome.project.stages
+    }
+    guessed = {stage: labels for stage, labels in guessed.items() if labels}
+    mend = "Type them from the data sheet or measure them, and mark where they came from."
+    if len(guessed) > TOGETHER:
+        total = sum(map(len, guessed.values()))
+        most = max(guessed, key=lambda stage: len(guessed[stage]))
+        message = f"{total} figures of {len(guessed)} stages are still guesses, most of them ({len(guessed[most])}) at {most.name}."
+        yield Finding("note", "still-a-guess", most.id, message, mend)
+        return
+    for stage, labels in guessed.items():
+        number = (
+            "1 figure is still a guess" if len(labels) == 1 else f"{len(labels)} figures are still guesses"
+        )
+        named = ", ".join(labels[:3]) + (" …" if len(labels) > 3 else "")
+        yield Finding("note", "still-a-guess", stage.id, f"{number} at {stage.name}: {named}.", mend)
 
 
 @finder
