@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from pathlib import Path
 
-from PySide6.QtCore import QMarginsF, QPointF, QRect, QRectF, QSize, QSizeF
+from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRect, QRectF, QSize, QSizeF
 from PySide6.QtGui import QImage, QPageSize, QPaintDevice, QPainter, QPdfWriter
 
 from app.diagram.geometry import Look
@@ -49,7 +49,7 @@ def write_picture(
         painter.translate(0.0, TITLE_PX)
         picture.paint(painter, inks)
 
-    _WRITERS[ending_of(target)](target, size, title, draw)
+    target.write_bytes(_MAKERS[ending_of(target)](size, title, draw))
 
 
 def ending_of(target: Path) -> str:
@@ -63,28 +63,32 @@ def ending_of(target: Path) -> str:
 Draw = Callable[[QPainter], None]
 
 
-def _png(target: Path, size: tuple[int, int], title: str, draw: Draw) -> None:
+def _png(size: tuple[int, int], title: str, draw: Draw) -> bytes:
     image = QImage(QSize(*size), QImage.Format.Format_RGB32)
     image.setText("Title", title)
     _on(image, draw)
-    if not image.save(str(target), "PNG"):  # type: ignore[call-overload]
-        raise OSError("the picture could not be saved")
+    made = _buffer()
+    image.save(made, "PNG")  # type: ignore[call-overload]
+    return made.data().data()
 
 
-def _svg(target: Path, size: tuple[int, int], title: str, draw: Draw) -> None:
+def _svg(size: tuple[int, int], title: str, draw: Draw) -> bytes:
     from PySide6.QtSvg import QSvgGenerator
 
+    made = _buffer()
     generator = QSvgGenerator()
-    generator.setFileName(str(target))
+    generator.setOutputDevice(made)
     generator.setResolution(96)
     generator.setSize(QSize(*size))
     generator.setViewBox(QRect(0, 0, *size))
     generator.setTitle(title)
     _on(generator, draw)
+    return made.data().data()
 
 
-def _pdf(target: Path, size: tuple[int, int], title: str, draw: Draw) -> None:
-    writer = QPdfWriter(str(target))
+def _pdf(size: tuple[int, int], title: str, draw: Draw) -> bytes:
+    made = _buffer()
+    writer = QPdfWriter(made)
     writer.setTitle(title)
     writer.setCreator("Gainwright")
     writer.setResolution(_PDF_DOTS_PER_INCH)
@@ -97,16 +101,21 @@ def _pdf(target: Path, size: tuple[int, int], title: str, draw: Draw) -> None:
         draw(painter)
 
     _on(writer, scaled)
+    return made.data().data()
+
+
+def _buffer() -> QBuffer:
+    made = QBuffer()
+    made.open(QIODevice.OpenModeFlag.WriteOnly)
+    return made
 
 
 def _on(device: QPaintDevice, draw: Draw) -> None:
-    painter = QPainter()
-    if not painter.begin(device):
-        raise OSError("it cannot be written to: is it open elsewhere?")
+    painter = QPainter(device)
     try:
         draw(painter)
     finally:
         painter.end()
 
 
-_WRITERS = {".png": _png, ".svg": _svg, ".pdf": _pdf}
+_MAKERS = {".png": _png, ".svg": _svg, ".pdf": _pdf}

@@ -6,7 +6,7 @@ from collections.abc import Callable, Iterator, Sequence
 from contextlib import contextmanager
 from pathlib import Path
 
-from PySide6.QtCore import QMarginsF, QPointF, QRectF, Qt
+from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRectF, Qt
 from PySide6.QtGui import QPagedPaintDevice, QPageLayout, QPageSize, QPainter, QPdfWriter, QPen
 
 from . import faces
@@ -25,14 +25,17 @@ def page_layout(paper: Paper) -> QPageLayout:
 
 
 def write_pdf(target: Path, pages: Sequence[Page], title: str, progress: Progress | None = None) -> None:
-    """Write the pages as a vector PDF. Raises OSError where the file cannot be written."""
-    writer = QPdfWriter(str(target))
+    """Write the pages as a vector PDF, in one piece when all are drawn. Raises OSError where that cannot be."""
+    drawn = QBuffer()
+    drawn.open(QIODevice.OpenModeFlag.WriteOnly)
+    writer = QPdfWriter(drawn)
     writer.setTitle(title)
     writer.setCreator("Gainwright")
     writer.setResolution(_DOTS_PER_INCH)
     if pages:
         writer.setPageLayout(page_layout(pages[0].paper))
     draw_pages(writer, pages, progress)
+    target.write_bytes(drawn.data().data())
 
 
 def draw_pages(device: QPagedPaintDevice, pages: Sequence[Page], progress: Progress | None = None) -> None:
@@ -58,7 +61,7 @@ def draw_pages(device: QPagedPaintDevice, pages: Sequence[Page], progress: Progr
 def _begun(device: QPagedPaintDevice) -> Iterator[QPainter]:
     painter = QPainter()
     if not painter.begin(device):
-        raise OSError("it cannot be written to: is it open elsewhere, or in a folder that is not there?")
+        raise OSError("the printer or file does not begin: is it ready, and not open elsewhere?")
     try:
         yield painter
     finally:

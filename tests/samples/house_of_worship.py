@@ -20,12 +20,22 @@ VOICES = (
     ("drums", "Drums", "104 dB SPL", "20 dB", 3, "dynamic", 28, -20),
 )
 MICROPHONES = {
-    "condenser": {"sensitivity_v_per_pa": "10 mV/Pa", "self_noise_spl": "17 dB(A)", "max_spl": "130 dB SPL",
-                  "z_ohm": "150 ohm", "form": "impedance-balanced"},
-    "choir": {"sensitivity_v_per_pa": "15 mV/Pa", "self_noise_spl": "16 dB(A)", "max_spl": "134 dB SPL", "z_ohm": "100 ohm",
-              "form": "impedance-balanced"},
+    "condenser": {
+        "sensitivity_v_per_pa": "10 mV/Pa",
+        "self_noise_spl": "17 dB(A)",
+        "max_spl": "130 dB SPL",
+        "z_ohm": "150 ohm",
+        "form": "impedance-balanced",
+    },
+    "choir": {
+        "sensitivity_v_per_pa": "15 mV/Pa",
+        "self_noise_spl": "16 dB(A)",
+        "max_spl": "134 dB SPL",
+        "z_ohm": "100 ohm",
+        "form": "impedance-balanced",
+    },
     "dynamic": {"sensitivity_v_per_pa": "2 mV/Pa", "z_ohm": "200 ohm", "form": "transformer"},
-}  # fmt: skip
+}
 
 
 def build() -> Project:
@@ -59,10 +69,29 @@ def _inputs(venue: Venue) -> None:
             area="platform",
         )
         add("microphone", f"{key}_mic", f"{name} microphone", 1, row, count=count, **MICROPHONES[microphone])
-        add("preamplifier", f"{key}_pre", f"{name} preamp", 2, row, count=count, rack=f"Stage box, inputs {1 + 4 * row} up",
-            gain_db=gain, pad=(0, "locked"))  # fmt: skip
-        add("mixer_channel", f"{key}_ch", f"{name} channel", 3, row, count=count, rack=MIXER, fader_db=(fader, "operator"),
-            trim_db=-6 if key == "drums" else 0, low_cut=(0 if key in ("piano", "drums") else 1, "locked"))  # fmt: skip
+        add(
+            "preamplifier",
+            f"{key}_pre",
+            f"{name} preamp",
+            2,
+            row,
+            count=count,
+            rack=f"Stage box, inputs {1 + 4 * row} up",
+            gain_db=gain,
+            pad=(0, "locked"),
+        )
+        add(
+            "mixer_channel",
+            f"{key}_ch",
+            f"{name} channel",
+            3,
+            row,
+            count=count,
+            rack=MIXER,
+            fader_db=(fader, "operator"),
+            trim_db=-6 if key == "drums" else 0,
+            low_cut=(0 if key in ("piano", "drums") else 1, "locked"),
+        )
         chain(key, f"{key}_mic", f"{key}_pre", f"{key}_ch")
     lines = (
         (
@@ -110,8 +139,16 @@ def _mixes(venue: Venue) -> None:
 
 
 def _monitors(venue: Venue) -> None:
-    venue.add("equaliser", "band_eq", "Monitor equaliser", 5, 7, rack=f"{AMPLIFIERS}, unit 2", bypass=(0, "locked"),
-              level_db=(-4, "locked"))  # fmt: skip
+    venue.add(
+        "equaliser",
+        "band_eq",
+        "Monitor equaliser",
+        5,
+        7,
+        rack=f"{AMPLIFIERS}, unit 2",
+        bypass=(0, "locked"),
+        level_db=(-4, "locked"),
+    )
     venue.add(
         "powered_loudspeaker", "wedge", "Monitor wedge", 8, 7, area="platform", level_db=(-7.5, "locked")
     )
@@ -128,14 +165,41 @@ def _loudspeakers(venue: Venue) -> None:
     zones = (
         # key, name, trim, crossover, amplifier ratings, attenuator, sensitivity, Q, boxes, cable
         ("mains", "Mains", -6, {"high_pass_1_hz": "90 Hz"}, large, -6, "99 dB 1 W/1 m", "14", 2, "35 m"),
-        ("sub", "Subwoofer", 4, {"high_pass_2_hz": "35 Hz", "low_pass_2_hz": "90 Hz"}, large, -8, "98 dB 1 W/1 m", "2", 1, "30 m"),
-        ("fills", "Front fills", -9, {"high_pass_3_hz": "140 Hz"}, small, -14, "92 dB 1 W/1 m", "6", 2, "25 m"),
+        (
+            "sub",
+            "Subwoofer",
+            4,
+            {"high_pass_2_hz": "35 Hz", "low_pass_2_hz": "90 Hz"},
+            large,
+            -8,
+            "98 dB 1 W/1 m",
+            "2",
+            1,
+            "30 m",
+        ),
+        (
+            "fills",
+            "Front fills",
+            -9,
+            {"high_pass_3_hz": "140 Hz"},
+            small,
+            -14,
+            "92 dB 1 W/1 m",
+            "6",
+            2,
+            "25 m",
+        ),
         ("gallery", "Gallery", -7, {"high_pass_4_hz": "110 Hz"}, small, -10, "94 dB 1 W/1 m", "8", 2, "40 m"),
-    )  # fmt: skip
+    )
     settings: dict[str, object] = {}
     for place, (_, _, trim, crossover, *_) in enumerate(zones, start=1):
-        settings |= {f"trim_{place}_db": trim, f"limiter_{place}": (1, "locked"), **crossover,
-                     f"limit_rms_{place}_dbfs": (-9, "locked"), f"limit_peak_{place}_dbfs": (-3, "locked")}  # fmt: skip
+        settings |= {
+            f"trim_{place}_db": trim,
+            f"limiter_{place}": (1, "locked"),
+            **crossover,
+            f"limit_rms_{place}_dbfs": (-9, "locked"),
+            f"limit_peak_{place}_dbfs": (-3, "locked"),
+        }
     add(
         "processor",
         "processor",
@@ -148,20 +212,51 @@ def _loudspeakers(venue: Venue) -> None:
     )
     chain("main", "processor")
     for place, (key, name, _, _, ratings, attenuator, sensitivity, q, boxes, length) in enumerate(zones):
-        add("power_amplifier", f"{key}_amp", f"{name} amplifier", 6, place, rack=f"{AMPLIFIERS}, unit {6 + 2 * place}",
-            rated_power_w=ratings, gain_db="32 dB", attenuator_db=(attenuator, "locked"))  # fmt: skip
+        add(
+            "power_amplifier",
+            f"{key}_amp",
+            f"{name} amplifier",
+            6,
+            place,
+            rack=f"{AMPLIFIERS}, unit {6 + 2 * place}",
+            rated_power_w=ratings,
+            gain_db="32 dB",
+            attenuator_db=(attenuator, "locked"),
+        )
         add("speaker_line", f"{key}_line", f"{name} line", 7, place, length_m=length, area_mm2="4 mm²")
-        add("loudspeaker", key, name, 8, place, sensitivity_spl=sensitivity, directivity_q=q, boxes=boxes,
-            continuous_w="300 W", adds="coherent" if key == "mains" else "power", area="hall")  # fmt: skip
+        add(
+            "loudspeaker",
+            key,
+            name,
+            8,
+            place,
+            sensitivity_spl=sensitivity,
+            directivity_q=q,
+            boxes=boxes,
+            continuous_w="300 W",
+            adds="coherent" if key == "mains" else "power",
+            area="hall",
+        )
         link("processor", f"{key}_amp", "out" if place == 0 else f"out_{place + 1}")
         chain(f"{key}_amp", f"{key}_line", key)
     room = {"ambient": "NC 30", "field_kind": "room", "volume_m3": "2600 m³", "rt60_s": "1.4 s"}
     seats: tuple[tuple[str, str, str, str, dict[str, tuple[float, float]]], ...] = (
-        ("middle", "Middle of the hall", "reference", "82 dB SPL",
-         {"mains": (13, 0), "sub": (12, 0), "fills": (11, 6), "gallery": (14, 12)}),
+        (
+            "middle",
+            "Middle of the hall",
+            "reference",
+            "82 dB SPL",
+            {"mains": (13, 0), "sub": (12, 0), "fills": (11, 6), "gallery": (14, 12)},
+        ),
         ("front", "Front pew", "nearest", "82 dB SPL", {"mains": (7, 8), "sub": (4.5, 0), "fills": (2.8, 0)}),
-        ("upstairs", "Gallery seat", "other", "82 dB SPL", {"mains": (20, 6), "sub": (19, 0), "gallery": (4.5, 0)}),
-    )  # fmt: skip
+        (
+            "upstairs",
+            "Gallery seat",
+            "other",
+            "82 dB SPL",
+            {"mains": (20, 6), "sub": (19, 0), "gallery": (4.5, 0)},
+        ),
+    )
     for row, (key, name, role, target, heard) in enumerate(seats):
         add("seat", key, name, 9, row, role=role, target_spl_db=target, **room)
         for loudspeaker, (distance, off_axis) in heard.items():

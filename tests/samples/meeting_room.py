@@ -40,16 +40,63 @@ def build() -> Project:
         stated_at_m="0.6 m",
         crest_db="15 dB",
     )
-    add("line_source", "radio", "Radio receiver", 0, 2, rack=f"{RACK}, unit 2", nominal_v="-8 dBu", max_output_v="+18 dBu",
-        z_out_ohm="150 ohm", crest_db="15 dB", noise="102 dB(A) re max", spectrum="speech", form="push-pull",
-        lower_by_db=["20 dB"], level_switch=(0, "locked"))  # fmt: skip
-    add("line_source", "laptop", "Laptop", 0, 3, nominal_v="-18 dBV", max_output_v="1 V", z_out_ohm="100 ohm",
-        crest_db="14 dB", noise="92 dB(A) re max", lower_by_db=[], form="unbalanced")  # fmt: skip
+    add(
+        "line_source",
+        "radio",
+        "Radio receiver",
+        0,
+        2,
+        rack=f"{RACK}, unit 2",
+        nominal_v="-8 dBu",
+        max_output_v="+18 dBu",
+        z_out_ohm="150 ohm",
+        crest_db="15 dB",
+        noise="102 dB(A) re max",
+        spectrum="speech",
+        form="push-pull",
+        lower_by_db=["20 dB"],
+        level_switch=(0, "locked"),
+    )
+    add(
+        "line_source",
+        "laptop",
+        "Laptop",
+        0,
+        3,
+        nominal_v="-18 dBV",
+        max_output_v="1 V",
+        z_out_ohm="100 ohm",
+        crest_db="14 dB",
+        noise="92 dB(A) re max",
+        lower_by_db=[],
+        form="unbalanced",
+    )
 
-    add("microphone", "lectern_mic", "Lectern microphone", 1, 0, sensitivity_v_per_pa="12 mV/Pa", self_noise_spl="22 dB(A)",
-        max_spl="130 dB SPL", z_ohm="150 ohm", form="impedance-balanced")  # fmt: skip
-    add("microphone", "table_mic", "Table microphones", 1, 1, count=4, sensitivity_v_per_pa="20 mV/Pa", self_noise_spl="20 dB(A)",
-        max_spl="126 dB SPL", z_ohm="150 ohm", form="impedance-balanced")  # fmt: skip
+    add(
+        "microphone",
+        "lectern_mic",
+        "Lectern microphone",
+        1,
+        0,
+        sensitivity_v_per_pa="12 mV/Pa",
+        self_noise_spl="22 dB(A)",
+        max_spl="130 dB SPL",
+        z_ohm="150 ohm",
+        form="impedance-balanced",
+    )
+    add(
+        "microphone",
+        "table_mic",
+        "Table microphones",
+        1,
+        1,
+        count=4,
+        sensitivity_v_per_pa="20 mV/Pa",
+        self_noise_spl="20 dB(A)",
+        max_spl="126 dB SPL",
+        z_ohm="150 ohm",
+        form="impedance-balanced",
+    )
 
     mixer = f"{RACK}, unit 4"
     add("preamplifier", "lectern_pre", "Lectern preamp", 2, 0, rack=mixer, gain_db=46, pad=(0, "locked"))
@@ -84,10 +131,28 @@ def build() -> Project:
         link(each, "stream", "after_fader")
     venue.links = [_with_distance(each, {"talker": "0.4 m", "table": "0.6 m"}) for each in venue.links]
 
-    add("processor", "processor", "Room processor", 5, 0, rack=f"{RACK}, unit 6", outputs_fitted=2, input_full_scale_v="+20 dBu",
-        output_full_scale_v="+20 dBu", input_trim_db=0, trim_1_db=-4, trim_2_db=-4, high_pass_1_hz="100 Hz", high_pass_2_hz="100 Hz",
-        limiter_1=(1, "locked"), limit_rms_1_dbfs=(-10, "locked"), limit_peak_1_dbfs=(-4, "locked"),
-        limiter_2=(1, "locked"), limit_rms_2_dbfs=(-10, "locked"), limit_peak_2_dbfs=(-4, "locked"))  # fmt: skip
+    add(
+        "processor",
+        "processor",
+        "Room processor",
+        5,
+        0,
+        rack=f"{RACK}, unit 6",
+        outputs_fitted=2,
+        input_full_scale_v="+20 dBu",
+        output_full_scale_v="+20 dBu",
+        input_trim_db=0,
+        trim_1_db=-4,
+        trim_2_db=-4,
+        high_pass_1_hz="100 Hz",
+        high_pass_2_hz="100 Hz",
+        limiter_1=(1, "locked"),
+        limit_rms_1_dbfs=(-10, "locked"),
+        limit_peak_1_dbfs=(-4, "locked"),
+        limiter_2=(1, "locked"),
+        limit_rms_2_dbfs=(-10, "locked"),
+        limit_peak_2_dbfs=(-4, "locked"),
+    )
     chain("main", "processor")
     add("line_cable", "stream_line", "Line to encoder", 5, 4, length_m="15 m")
     add(
@@ -116,10 +181,18 @@ def build() -> Project:
 
     for place, (half, output) in enumerate((("front", "out"), ("rear", "out_2"))):
         amplifier = add(
-            "power_amplifier", f"amp_{half}", f"Amplifier {half}", 6, place, rack=f"{RACK}, unit {8 + place}",
-            rated_power_w=["60 W @ 4 ohm"], gain_db="26 dB", noise="100 dB(A) re rated", max_input_v="+20 dBu",
+            "power_amplifier",
+            f"amp_{half}",
+            f"Amplifier {half}",
+            6,
+            place,
+            rack=f"{RACK}, unit {8 + place}",
+            rated_power_w=["60 W @ 4 ohm"],
+            gain_db="26 dB",
+            noise="100 dB(A) re rated",
+            max_input_v="+20 dBu",
             attenuator_db=(-26, "locked"),
-        )  # fmt: skip
+        )
         link("processor", amplifier, output)
         add(
             "speaker_line",
@@ -130,8 +203,20 @@ def build() -> Project:
             length_m=f"{18 + 6 * place} m",
             area_mm2="1.5 mm²",
         )
-        add("loudspeaker", f"ceiling_{half}", f"Ceiling {half}", 8, place, sensitivity_spl="89 dB 1 W/1 m", z_ohm="16 ohm",
-            continuous_w="30 W", directivity_q="4", boxes=4, adds="power", area="ceiling")  # fmt: skip
+        add(
+            "loudspeaker",
+            f"ceiling_{half}",
+            f"Ceiling {half}",
+            8,
+            place,
+            sensitivity_spl="89 dB 1 W/1 m",
+            z_ohm="16 ohm",
+            continuous_w="30 W",
+            directivity_q="4",
+            boxes=4,
+            adds="power",
+            area="ceiling",
+        )
         chain(amplifier, f"line_{half}", f"ceiling_{half}")
 
     room = {"ambient": "NC 30", "field_kind": "room", "volume_m3": "190 m³", "rt60_s": "0.6 s"}

@@ -46,27 +46,121 @@ LINES = (
 
 #: key, name, rack, ratings, attenuator, sensitivity, impedance, Q, boxes, continuous power, cable.
 LOUDSPEAKERS = (
-    ("left", "Main left", 0, ["900 W @ 8 ohm", "1500 W @ 4 ohm"], -8, "101 dB 1 W/1 m", "8 ohm", "16", 2, "400 W", "38 m"),
-    ("right", "Main right", 1, ["900 W @ 8 ohm", "1500 W @ 4 ohm"], -8, "101 dB 1 W/1 m", "8 ohm", "16", 2, "400 W", "42 m"),
-    ("sub", "Subwoofers", 0, ["1200 W @ 8 ohm", "2000 W @ 4 ohm"], -9, "99 dB 1 W/1 m", "8 ohm", "2", 2, "600 W", "30 m"),
-    ("fill", "Front fills", 1, ["250 W @ 8 ohm", "400 W @ 4 ohm"], -20, "90 dB 1 W/1 m", "16 ohm", "5", 4, "80 W", "45 m"),
-    ("delay", "Balcony delays", 1, ["250 W @ 8 ohm", "400 W @ 4 ohm"], -18, "93 dB 1 W/1 m", "16 ohm", "6", 4, "100 W", "60 m"),
+    (
+        "left",
+        "Main left",
+        0,
+        ["900 W @ 8 ohm", "1500 W @ 4 ohm"],
+        -8,
+        "101 dB 1 W/1 m",
+        "8 ohm",
+        "16",
+        2,
+        "400 W",
+        "38 m",
+    ),
+    (
+        "right",
+        "Main right",
+        1,
+        ["900 W @ 8 ohm", "1500 W @ 4 ohm"],
+        -8,
+        "101 dB 1 W/1 m",
+        "8 ohm",
+        "16",
+        2,
+        "400 W",
+        "42 m",
+    ),
+    (
+        "sub",
+        "Subwoofers",
+        0,
+        ["1200 W @ 8 ohm", "2000 W @ 4 ohm"],
+        -9,
+        "99 dB 1 W/1 m",
+        "8 ohm",
+        "2",
+        2,
+        "600 W",
+        "30 m",
+    ),
+    (
+        "fill",
+        "Front fills",
+        1,
+        ["250 W @ 8 ohm", "400 W @ 4 ohm"],
+        -20,
+        "90 dB 1 W/1 m",
+        "16 ohm",
+        "5",
+        4,
+        "80 W",
+        "45 m",
+    ),
+    (
+        "delay",
+        "Balcony delays",
+        1,
+        ["250 W @ 8 ohm", "400 W @ 4 ohm"],
+        -18,
+        "93 dB 1 W/1 m",
+        "16 ohm",
+        "6",
+        4,
+        "100 W",
+        "60 m",
+    ),
     ("pit", "Pit monitor", 0, ["250 W @ 8 ohm"], -20, "95 dB 1 W/1 m", "8 ohm", "8", 1, "200 W", "25 m"),
-    ("wings", "Wing foldback", 0, ["250 W @ 8 ohm", "400 W @ 4 ohm"], -8, "95 dB 1 W/1 m", "8 ohm", "8", 2, "200 W", "32 m"),
-)  # fmt: skip
+    (
+        "wings",
+        "Wing foldback",
+        0,
+        ["250 W @ 8 ohm", "400 W @ 4 ohm"],
+        -8,
+        "95 dB 1 W/1 m",
+        "8 ohm",
+        "8",
+        2,
+        "200 W",
+        "32 m",
+    ),
+)
 
 #: key, name, role, target, and each loudspeaker's distance and off-axis loss.
 SEATS: tuple[Seat, ...] = (
-    ("row_m", "Row M centre", "reference", "88 dB SPL",
-     {"left": (15, 3), "right": (15, 3), "sub": (15, 0), "fill": (12, 8), "delay": (9, 12)}),
-    ("row_b", "Row B centre", "nearest", "88 dB SPL", {"left": (8, 9), "right": (8, 9), "sub": (6, 0), "fill": (2.6, 2)}),
-    ("row_d", "Row D left", "other", "89 dB SPL", {"left": (8, 2), "right": (13, 9), "sub": (7, 0), "fill": (4.5, 3)}),
-    ("under", "Row T under balcony", "other", "87 dB SPL",
-     {"left": (24, 3), "right": (24, 3), "sub": (24, 0), "delay": (3.5, 0)}),
+    (
+        "row_m",
+        "Row M centre",
+        "reference",
+        "88 dB SPL",
+        {"left": (15, 3), "right": (15, 3), "sub": (15, 0), "fill": (12, 8), "delay": (9, 12)},
+    ),
+    (
+        "row_b",
+        "Row B centre",
+        "nearest",
+        "88 dB SPL",
+        {"left": (8, 9), "right": (8, 9), "sub": (6, 0), "fill": (2.6, 2)},
+    ),
+    (
+        "row_d",
+        "Row D left",
+        "other",
+        "89 dB SPL",
+        {"left": (8, 2), "right": (13, 9), "sub": (7, 0), "fill": (4.5, 3)},
+    ),
+    (
+        "under",
+        "Row T under balcony",
+        "other",
+        "87 dB SPL",
+        {"left": (24, 3), "right": (24, 3), "sub": (24, 0), "delay": (3.5, 0)},
+    ),
     ("balcony", "Balcony front", "other", "88 dB SPL", {"left": (20, 1), "right": (20, 1), "sub": (20, 0)}),
     ("conductor", "Conductor", "other", "82 dB SPL", {"pit": (1.5, 0)}),
     ("wing_left", "Wing, stage left", "other", "84 dB SPL", {"wings": (3.5, 0)}),
-)  # fmt: skip
+)
 
 
 def build() -> Project:
@@ -94,8 +188,17 @@ def _microphones(venue: Venue) -> None:
         )
         venue.add("microphone", f"{key}_mic", f"{name} microphone", 1, row, count=count, **figures)
         venue.add("line_cable", f"{key}_cable", f"{name} multicore", 2, row, count=count, length_m="45 m")
-        venue.add("preamplifier", f"{key}_pre", f"{name} preamp", 3, row, count=count, rack=f"{DESK}, input cards",
-                  gain_db=gain, pad=(0, "locked"))  # fmt: skip
+        venue.add(
+            "preamplifier",
+            f"{key}_pre",
+            f"{name} preamp",
+            3,
+            row,
+            count=count,
+            rack=f"{DESK}, input cards",
+            gain_db=gain,
+            pad=(0, "locked"),
+        )
         venue.chain(key, f"{key}_mic", f"{key}_cable", f"{key}_pre")
         _channel(venue, key, name, row, count, -1 if key == "drums" else 0, fader, group)
         venue.link(f"{key}_pre", f"{key}_ch")
@@ -105,9 +208,22 @@ def _lines(venue: Venue) -> None:
     for row, (key, name, count, nominal, most, crest, trim, fader, group) in enumerate(
         LINES, start=len(MICROPHONES)
     ):
-        venue.add("line_source", key, name, 0, row, count=count, nominal_v=nominal, max_output_v=most, crest_db=crest,
-                  z_out_ohm="150 ohm", form="transformer", lower_by_db=[], noise="105 dB(A) re max",
-                  spectrum="speech" if group == "voices" else "pink")  # fmt: skip
+        venue.add(
+            "line_source",
+            key,
+            name,
+            0,
+            row,
+            count=count,
+            nominal_v=nominal,
+            max_output_v=most,
+            crest_db=crest,
+            z_out_ohm="150 ohm",
+            form="transformer",
+            lower_by_db=[],
+            noise="105 dB(A) re max",
+            spectrum="speech" if group == "voices" else "pink",
+        )
         _channel(venue, key, name, row, count, trim, fader, group)
         venue.link(key, f"{key}_ch")
 
@@ -115,8 +231,18 @@ def _lines(venue: Venue) -> None:
 def _channel(
     venue: Venue, key: str, name: str, row: int, count: int, trim: float, fader: float, group: str
 ) -> None:
-    venue.add("mixer_channel", f"{key}_ch", f"{name} channels", 4, row, count=count, rack=f"{DESK}, {group} bay", trim_db=trim,
-              fader_db=(fader, "operator"), low_cut=(1 if group == "voices" else 0, "locked"))  # fmt: skip
+    venue.add(
+        "mixer_channel",
+        f"{key}_ch",
+        f"{name} channels",
+        4,
+        row,
+        count=count,
+        rack=f"{DESK}, {group} bay",
+        trim_db=trim,
+        fader_db=(fader, "operator"),
+        low_cut=(1 if group == "voices" else 0, "locked"),
+    )
 
 
 def _mixes(venue: Venue) -> None:
@@ -125,10 +251,13 @@ def _mixes(venue: Venue) -> None:
         for group in ("voices", "band")
     }
     buses = (
-        ("voices", "Voices group", 5, 0, -2), ("band", "Band group", 5, 1, -5),
-        ("bus_left", "Left mix", 6, 0, 0), ("bus_right", "Right mix", 6, 1, 0),
-        ("bus_pit", "Pit mix", 6, 5, -10), ("bus_wings", "Wing mix", 6, 6, -1.5),
-    )  # fmt: skip
+        ("voices", "Voices group", 5, 0, -2),
+        ("band", "Band group", 5, 1, -5),
+        ("bus_left", "Left mix", 6, 0, 0),
+        ("bus_right", "Right mix", 6, 1, 0),
+        ("bus_pit", "Pit mix", 6, 5, -10),
+        ("bus_wings", "Wing mix", 6, 6, -1.5),
+    )
     for key, name, column, row, fader in buses:
         venue.add(
             "mix_bus",
@@ -155,14 +284,32 @@ def _processors(venue: Venue) -> None:
     def outputs(*trims: float, **crossover: str) -> dict[str, object]:
         settings: dict[str, object] = {"outputs_fitted": len(trims), **crossover}
         for place, trim in enumerate(trims, start=1):
-            settings |= {f"trim_{place}_db": trim, f"limiter_{place}": (1, "locked"),
-                         f"limit_rms_{place}_dbfs": (-9, "locked"), f"limit_peak_{place}_dbfs": (-3, "locked")}  # fmt: skip
+            settings |= {
+                f"trim_{place}_db": trim,
+                f"limiter_{place}": (1, "locked"),
+                f"limit_rms_{place}_dbfs": (-9, "locked"),
+                f"limit_peak_{place}_dbfs": (-3, "locked"),
+            }
         return settings
 
-    venue.add("processor", "proc_left", "Processor left", 7, 0, rack=f"{PROCESSORS}, unit 2",
-              **outputs(0, 5, high_pass_1_hz="80 Hz", high_pass_2_hz="32 Hz", low_pass_2_hz="80 Hz"))  # fmt: skip
-    venue.add("processor", "proc_right", "Processor right", 7, 1, rack=f"{PROCESSORS}, unit 3",
-              **outputs(0, -2, 0, high_pass_1_hz="80 Hz", high_pass_2_hz="150 Hz", high_pass_3_hz="120 Hz"))  # fmt: skip
+    venue.add(
+        "processor",
+        "proc_left",
+        "Processor left",
+        7,
+        0,
+        rack=f"{PROCESSORS}, unit 2",
+        **outputs(0, 5, high_pass_1_hz="80 Hz", high_pass_2_hz="32 Hz", low_pass_2_hz="80 Hz"),
+    )
+    venue.add(
+        "processor",
+        "proc_right",
+        "Processor right",
+        7,
+        1,
+        rack=f"{PROCESSORS}, unit 3",
+        **outputs(0, -2, 0, high_pass_1_hz="80 Hz", high_pass_2_hz="150 Hz", high_pass_3_hz="120 Hz"),
+    )
     venue.add(
         "equaliser",
         "eq_pit",
@@ -191,18 +338,42 @@ def _processors(venue: Venue) -> None:
 
 def _loudspeakers(venue: Venue) -> None:
     feeds = {
-        "left": ("proc_left", "out"), "sub": ("proc_left", "out_2"),
-        "right": ("proc_right", "out"), "fill": ("proc_right", "out_2"), "delay": ("proc_right", "out_3"),
-        "pit": ("eq_pit", "out"), "wings": ("eq_wings", "out"),
-    }  # fmt: skip
+        "left": ("proc_left", "out"),
+        "sub": ("proc_left", "out_2"),
+        "right": ("proc_right", "out"),
+        "fill": ("proc_right", "out_2"),
+        "delay": ("proc_right", "out_3"),
+        "pit": ("eq_pit", "out"),
+        "wings": ("eq_wings", "out"),
+    }
     for row, (key, name, rack, ratings, attenuator, sensitivity, z_ohm, q, boxes, power, length) in enumerate(
         LOUDSPEAKERS
     ):
-        venue.add("power_amplifier", f"{key}_amp", f"{name} amplifier", 8, row, rack=f"{AMPLIFIERS[rack]}, unit {4 + 2 * row}",
-                  rated_power_w=ratings, gain_db="32 dB", attenuator_db=(attenuator, "locked"))  # fmt: skip
+        venue.add(
+            "power_amplifier",
+            f"{key}_amp",
+            f"{name} amplifier",
+            8,
+            row,
+            rack=f"{AMPLIFIERS[rack]}, unit {4 + 2 * row}",
+            rated_power_w=ratings,
+            gain_db="32 dB",
+            attenuator_db=(attenuator, "locked"),
+        )
         venue.add("speaker_line", f"{key}_line", f"{name} line", 9, row, length_m=length, area_mm2="4 mm²")
-        venue.add("loudspeaker", key, name, 10, row, sensitivity_spl=sensitivity, z_ohm=z_ohm, directivity_q=q, boxes=boxes,
-                  continuous_w=power, adds="power" if key in ("fill", "delay", "wings") else "coherent")  # fmt: skip
+        venue.add(
+            "loudspeaker",
+            key,
+            name,
+            10,
+            row,
+            sensitivity_spl=sensitivity,
+            z_ohm=z_ohm,
+            directivity_q=q,
+            boxes=boxes,
+            continuous_w=power,
+            adds="power" if key in ("fill", "delay", "wings") else "coherent",
+        )
         source, output = feeds[key]
         venue.link(source, f"{key}_amp", output)
         venue.chain(f"{key}_amp", f"{key}_line", key)
