@@ -42,8 +42,11 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
         action.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
         window.removeAction(action)
 
-    def choose(name: str, text: str, group: QActionGroup, run: Callable[[], object], keys: str = "") -> None:
+    def choose(
+        name: str, text: str, group: QActionGroup, run: Callable[[], object], keys: str = "", short: str = ""
+    ) -> None:
         action = add(name, text, keys, run)
+        action.setIconText(short or text)
         action.setCheckable(True)
         group.addAction(action)
 
@@ -89,9 +92,17 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
             units,
             lambda unit=unit: window.set_unit(unit),
             f"Ctrl+{place + 1}",
+            unit,
         )
-    choose("view levels", "&Levels", views, lambda: window.set_view("levels"), "Ctrl+4")
-    choose("view to clip", "Referred to the &clip point", views, lambda: window.set_view("to clip"), "Ctrl+5")
+    choose("view levels", "&Levels", views, lambda: window.set_view("levels"), "Ctrl+4", "Levels")
+    choose(
+        "view to clip",
+        "Referred to the &clip point",
+        views,
+        lambda: window.set_view("to clip"),
+        "Ctrl+5",
+        "To clip",
+    )
     hold = add(
         "hold", "&Hold trace", "Ctrl+H", lambda: None, "Keep the lines as they are now, to compare with"
     )

@@ -3,16 +3,16 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QObject, Qt
-from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QScrollBar, QSplitter, QVBoxLayout, QWidget
 
 from .columns import Columns
 from .diagram.widget import DiagramView
+from .diagram_head import DiagramHead
 from .document import Document
 from .inks import Inks
 from .path_view import PathView
 
-ZOOM_STEP = 1.15
+PATH_SHARE = 0.4  # of the height, at most, where no hand has set it
 
 
 class Centre(QWidget):
@@ -23,13 +23,17 @@ class Centre(QWidget):
     ) -> None:
         super().__init__(parent)
         self._document, self.columns = document, columns
+        self._fitted = True  # the whole path is shown, and stays so when the window changes its size
+        self._moving = False  # the columns move because we move them
+        self.shared_out = False  # a hand has set how the height is shared
         self.path = PathView(document, columns, inks)
         self.diagram = DiagramView(document, columns, inks)
+        self.head = DiagramHead(document, self.diagram)
         self.splitter = QSplitter(Qt.Orientation.Vertical)
         self.splitter.setHandleWidth(1)
         self.splitter.setChildrenCollapsible(False)
         self.splitter.addWidget(self.path)
-        self.splitter.addWidget(self.diagram)
+        self.splitter.addWidget(self._lower())
         self.splitter.setStretchFactor(0, 0)
         self.splitter.setStretchFactor(1, 1)
         self.bar = QScrollBar(Qt.Orientation.Horizontal)
@@ -42,23 +46,43 @@ class Centre(QWidget):
         self.bar.valueChanged.connect(columns.scroll_to)
         columns.changed.connect(self._columns_changed)
         document.changed.connect(self._measure)
+        self.splitter.splitterMoved.connect(self._shared_by_hand)
         self.path.installEventFilter(self)
         self._measure()
+
+    def _lower(self) -> QWidget:
+        lower = QWidget()
+        column = QVBoxLayout(lower)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addWidget(self.head)
+        column.addWidget(self.diagram, 1)
+        return lower
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         """The columns are as wide as the path view."""
         if watched is self.path and event.type() == QEvent.Type.Resize:
             self._measure()
+            if self._fitted:
+                self.fit()
         return False
-
-    def resizeEvent(self, event: QResizeEvent) -> None:
-        super().resizeEvent(event)
-        self._measure()
 
     def fit(self) -> None:
         """Show the whole path."""
+        self._moving = True
         self._measure()
         self.columns.fit()
+        self._moving = False
+        self._fitted = True
+
+    def share_out(self) -> None:
+        """Give the path the height its rows need, as far as the diagram keeps most; not where a hand has set it."""
+        if self.shared_out:
+            return
+        whole = self.splitter.height()
+        layout = self.path.grid
+        wanted = round(min(layout.scale.height(max(2, layout.rows)), PATH_SHARE * whole))
+        self.splitter.setSizes([wanted, whole - wanted])
 
     def zoom(self, factor: float) -> None:
         """Zoom about the current stage."""
@@ -69,16 +93,25 @@ class Centre(QWidget):
         self.path.set_inks(inks)
         self.diagram.set_inks(inks)
 
+    def _shared_by_hand(self) -> None:
+        self.shared_out = True
+
     def _measure(self, _changes: object = None) -> None:
+        was, self._moving = self._moving, True
         stages = self._document.project.stages
         self.columns.set_extent(
             max((stage.column for stage in stages), default=-1) + 1, float(self.path.width())
         )
+        self._moving = was
         self._columns_changed()
 
     def _columns_changed(self) -> None:
+        moved, self._moving = self._moving, True
         self.bar.setRange(0, round(self.columns.most_scroll_px))
         self.bar.setPageStep(max(1, self.path.width()))
         self.bar.setSingleStep(max(1, round(self.columns.pitch_px / 4)))
         self.bar.setValue(round(self.columns.scroll_px))
         self.bar.setVisible(self.bar.maximum() > 0)
+        self._moving = moved
+        if not moved:
+            self._fitted = False

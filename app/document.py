@@ -62,7 +62,9 @@ class Document(QObject):
     """A project that is being worked on, and the file it came from."""
 
     changed = Signal(object)  # changes: id -> (before, after), as they were applied; `project` is already new
-    solved = Signal(object)  # outcome: at most once a frame, later than `changed`
+    solved = Signal(
+        object
+    )  # outcome: at most once a frame, later than `changed`; once more when a gesture ends
     selection_changed = Signal(object)  # frozenset of the ids of stages and links
     file_changed = Signal()  # another path, or modified against saved
 
@@ -134,7 +136,6 @@ class Document(QObject):
         result = self._project.with_changes(changes)
         if _adds_or_takes_away(changes):
             self._tried = evaluate(result)  # a ring of passive stages shows only here
-        self._gesture_open = gesture is not None
         token = None if gesture is None else (gesture, self._gesture_number)
         self._gesture_open = gesture is not None
         self.undo_stack.push(Edit(self, title, changes, token))
@@ -142,12 +143,12 @@ class Document(QObject):
 
     def end_gesture(self) -> None:
         """The hand lets go: what follows is an undo entry of its own, and the last value is solved now."""
-        self._gesture_number += 1
         was_open, self._gesture_open = self._gesture_open, False
+        self._gesture_number += 1
         if self._frame.isActive():
             self.flush()
         elif was_open:
-            self.solved.emit(self._outcome)  # views that kept still while the hand moved may settle now
+            self.solved.emit(self._outcome)  # for what kept still while the hand moved
 
     def undo(self) -> None:
         """Take the last edit back."""

@@ -6,7 +6,7 @@ from collections.abc import Callable, Mapping
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QByteArray, QEvent, Qt, QTimer
-from PySide6.QtGui import QAction, QCloseEvent, QPaintEvent
+from PySide6.QtGui import QAction, QCloseEvent, QPaintEvent, QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QApplication, QDialog, QMainWindow, QSplitter, QVBoxLayout, QWidget
 
 from engine.project import HEADER_KEY
@@ -77,6 +77,9 @@ class MainWindow(QMainWindow):
         bar = build_menus(self, self.actions_)
         self.top = TopLine(bar, [find("undo"), find("redo"), None, find("hold"), None, find("print")])
         self.setMenuWidget(self.top)
+        self.centre.head.add_choices(
+            [find(f"unit {unit}") for unit in UNITS], [find("view levels"), find("view to clip")]
+        )
         self.across = QSplitter(Qt.Orientation.Horizontal)
         self.across.setHandleWidth(1)
         self.across.setChildrenCollapsible(False)
@@ -127,6 +130,7 @@ class MainWindow(QMainWindow):
             state = QByteArray.fromBase64(self.memory.text(f"splitter {name}").encode())
             if not state.isEmpty():
                 splitter.restoreState(state)
+                self.centre.shared_out |= splitter is self.centre.splitter
         unit = self.memory.text("unit")
         self.set_unit(unit if unit in UNITS else "dBu")
         self.actions_["view levels"].setChecked(True)
@@ -155,6 +159,7 @@ class MainWindow(QMainWindow):
         self.actions_["hold"].setChecked(False)
         self.notice.hide()
         self.centre.fit()
+        self.centre.share_out()
 
     def set_unit(self, unit: Unit) -> None:
         """Show electrical levels in this unit."""
@@ -194,6 +199,14 @@ class MainWindow(QMainWindow):
         application = QApplication.instance()
         if isinstance(application, QApplication):
             style.apply(application, self.inks, style.TOUCH if self._touch else style.POINTER)
+
+    def showEvent(self, event: QShowEvent) -> None:
+        super().showEvent(event)
+        self.centre.share_out()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self.centre.share_out()
 
     def paintEvent(self, event: QPaintEvent) -> None:
         super().paintEvent(event)
@@ -299,6 +312,8 @@ class MainWindow(QMainWindow):
             return
         self.memory.put("geometry", bytes(self.saveGeometry().toBase64().data()).decode())
         for name, splitter in self._splitters().items():
+            if splitter is self.centre.splitter and not self.centre.shared_out:
+                continue
             self.memory.put(f"splitter {name}", bytes(splitter.saveState().toBase64().data()).decode())
         self.files.close()
         if self.keeper is not None:

@@ -156,6 +156,18 @@ def test_save_ends_a_gesture(document, tmp_path):
     assert not document.modified
 
 
+def test_what_waits_for_the_end_of_a_gesture_is_told(document, solves):
+    told: list[bool] = []
+    document.solved.connect(lambda _: told.append(document.gesture_open))
+    slide(document, 41.0)
+    document.flush()
+    assert document.gesture_open
+    document.end_gesture()
+    document.end_gesture()
+    assert told == [True, False]
+    assert len(solves) == 1
+
+
 # -- checked before it is pushed -----------------------------------------------------------------------------
 def test_what_cannot_be_is_refused_and_changes_nothing(document):
     before = document.project
