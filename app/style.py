@@ -113,13 +113,16 @@ QSplitter::handle:vertical {{ height: 1px; }}
 QScrollBar {{ background: transparent; border: none; margin: 0; }}
 QScrollBar:vertical {{ width: 10px; }}
 QScrollBar:horizontal {{ height: 10px; }}
-QScrollBar::handle {{ background: {_name(blend(inks.muted, inks.paper, 0.35))}; border-radius: 3px; margin: 2px; min-width: 24px; min-height: 24px; }}
+QScrollBar::handle {{ background: {_name(blend(inks.muted, inks.paper, 0.35))}; border-radius: 3px; margin: 2px;
+    min-width: 24px; min-height: 24px; }}
 QScrollBar::handle:hover {{ background: {muted}; }}
-QScrollBar::add-line, QScrollBar::sub-line, QScrollBar::add-page, QScrollBar::sub-page {{ background: none; border: none; width: 0; height: 0; }}
+QScrollBar::add-line, QScrollBar::sub-line, QScrollBar::add-page, QScrollBar::sub-page {{ background: none;
+    border: none; width: 0; height: 0; }}
 QSlider {{ min-height: {density.row_px}px; background: transparent; }}
 QSlider::groove:horizontal {{ height: 3px; background: {hairline}; border-radius: 1px; }}
 QSlider::sub-page:horizontal {{ background: {accent}; height: 3px; border-radius: 1px; }}
-QSlider::handle:horizontal {{ background: {raised}; border: 2px solid {accent}; width: 10px; height: 10px; margin: -6px 0; border-radius: 7px; }}
+QSlider::handle:horizontal {{ background: {raised}; border: 2px solid {accent}; width: 10px; height: 10px;
+    margin: -6px 0; border-radius: 7px; }}
 QSlider:focus::handle:horizontal, QSlider::handle:horizontal:hover {{ background: {accent}; }}
 QSlider::sub-page:horizontal:disabled, QSlider::handle:horizontal:disabled {{ background: {hairline}; border-color: {faint}; }}
 QStatusBar {{ background: {raised}; color: {ink}; border-top: 1px solid {hairline}; }}
