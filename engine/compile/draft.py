@@ -58,11 +58,23 @@ class Draft:
         self._splits = self._split_bits()
         for index in [i for i, row in enumerate(self.rows) if row.sort is Sort.JOIN and row.rule != "power"]:
             join = self.rows[index]
+            later = self._bits_behind(join)
             for place, (row, members) in enumerate(join.heard):
                 if members > 1:
                     self._put(join, self._pair(row, row, unlike=True), members * (members - 1.0))
+                if not self._splits[row] & later[place]:
+                    continue
                 for other, other_members in join.heard[place + 1 :]:
                     self._put_two(join, (row, members), (other, other_members))
+
+    def _bits_behind(self, join: DraftRow) -> list[int]:
+        """For each row a join hears, the bits of all that it hears behind it in the list."""
+        assert self._splits is not None
+        found, bits = [0], 0
+        for row, _ in reversed(join.heard[1:]):
+            bits |= self._splits[row]
+            found.append(bits)
+        return found[::-1]
 
     def _put_two(self, join: DraftRow, one: tuple[int, int], two: tuple[int, int]) -> None:
         (row, members), (other, other_members) = one, two
@@ -148,15 +160,22 @@ class Draft:
 
     # -- who has a common origin ---------------------------------------------------------------------------
     def _split_bits(self) -> list[int]:
-        """For each row, the rows feeding several others (or a group) that it hears, itself among them, as bits."""
+        """For each row, the rows feeding several others (or a group) that it hears, itself among them, as bits.
+
+        Where one row is on the way to another and both are heard by a third, the first feeds several: its own bit tells.
+        """
         children = [0] * len(self.rows)
         for row in self.rows:
             for parent, _ in row.heard:
                 entering = row.group is not None and self.rows[parent].group != row.group
                 children[parent] += 2 if entering else 1
         bits: list[int] = []
+        splits = 0
         for index, row in enumerate(self.rows):
-            own = 1 << index if index != SILENCE and children[index] > 1 else 0
+            own = 0
+            if index != SILENCE and children[index] > 1:
+                own = 1 << splits
+                splits += 1
             for parent, _ in row.heard:
                 own |= bits[parent]
             bits.append(own)
@@ -164,16 +183,4 @@ class Draft:
 
     def _have_common(self, one: int, two: int) -> bool:
         assert self._splits is not None
-        return bool(self._splits[one] & self._splits[two]) or self._hears(one, two)
-
-    def _hears(self, late: int, early: int) -> bool:
-        """Whether one row is on the way to the other."""
-        ahead, seen = [late], set()
-        while ahead:
-            at = ahead.pop()
-            if at == early:
-                return True
-            if at > early and at not in seen:
-                seen.add(at)
-                ahead.extend(parent for parent, _ in self.rows[at].heard)
-        return False
+        return bool(self._splits[one] & self._splits[two])
