@@ -292,7 +292,7 @@ _ALL = (
         high=1e6,
         bare="m²",
         above_low=True,
-    ),  # fmt: skip
+    ),
     Quantity(
         "ambient",
         "Room noise",
