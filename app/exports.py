@@ -16,6 +16,8 @@ from .files import why
 PICTURES = ("PNG picture (*.png)", "SVG drawing (*.svg)", "PDF page (*.pdf)")
 SHEETS = ("PDF (*.pdf)",)
 
+PICTURE_PX = (1400, 700)
+
 
 class Exports(QObject):
     """Sheets and diagram of a document. The sheets' code is loaded when first asked for."""
@@ -37,12 +39,13 @@ class Exports(QObject):
 
     def write_diagram(self, path_shown: Sequence[str], look: Look) -> bool:
         """Write the level diagram that is shown as a picture where the person says."""
-        from .diagram.export import write
+        from .inks import LIGHT
+        from .picture_file import write_picture
 
         path = self._ask.save_path("Save the level diagram", self._suggested(" levels.png"), PICTURES)
         if path is None:
             return False
-        return self._write(path, lambda target: write(self._document.outcome, path_shown, target, look=look))
+        return self._write(path, lambda target: write_picture(target, self._document.outcome, path_shown, PICTURE_PX, LIGHT, look))
 
     def print_sheets(self, *_: object) -> None:
         """The system's print dialog, then the sheets."""

@@ -10,9 +10,10 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
-from PySide6.QtGui import QFontMetricsF, QPainter, QPainterPath, QPen, QPolygonF
+from PySide6.QtGui import QPainter, QPainterPath, QPen, QPolygonF
 
 from app.diagram.geometry import Geometry, Look, Request, build
+from app.diagram.metrics import text_width
 from app.diagram.paint import LABEL_PX, STROKES, paint
 from app.inks import Inks, font
 from engine.levels import NodeLevels
@@ -181,15 +182,10 @@ def tightest(outcome: Outcome, path: Sequence[str]) -> NodeLevels | None:
     return trace[min(known)[1]] if known else None
 
 
-def text_width(text: str, strong: bool) -> float:
-    """The width of a label [px]."""
-    return QFontMetricsF(font(LABEL_PX, strong=strong)).horizontalAdvance(text)
-
-
 def _lines(name: str, room: float) -> Iterator[str]:
     """A name broken between words into lines no wider than `room`, as far as its words allow."""
     line = ""
-    for word in name.split():
+    for word in name.split(" "):
         longer = f"{line} {word}".strip()
         if line and text_width(longer, False) > room:
             yield line

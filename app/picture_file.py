@@ -9,8 +9,9 @@ from PySide6.QtCore import QBuffer, QIODevice, QMarginsF, QPointF, QRect, QRectF
 from PySide6.QtGui import QImage, QPageSize, QPaintDevice, QPainter, QPdfWriter
 
 from app.diagram.geometry import Look
+from app.diagram.metrics import text_width
 from app.inks import Inks, font
-from app.picture import Picture, text_width
+from app.picture import Picture
 from engine.outcome import Outcome
 
 ENDINGS = (".png", ".svg", ".pdf")
@@ -69,7 +70,7 @@ def _png(size: tuple[int, int], title: str, draw: Draw) -> bytes:
     _on(image, draw)
     made = _buffer()
     image.save(made, "PNG")  # type: ignore[call-overload]
-    return made.data().data()
+    return bytes(made.data().data())
 
 
 def _svg(size: tuple[int, int], title: str, draw: Draw) -> bytes:
@@ -83,7 +84,7 @@ def _svg(size: tuple[int, int], title: str, draw: Draw) -> bytes:
     generator.setViewBox(QRect(0, 0, *size))
     generator.setTitle(title)
     _on(generator, draw)
-    return made.data().data()
+    return bytes(made.data().data())
 
 
 def _pdf(size: tuple[int, int], title: str, draw: Draw) -> bytes:
@@ -101,7 +102,7 @@ def _pdf(size: tuple[int, int], title: str, draw: Draw) -> bytes:
         draw(painter)
 
     _on(writer, scaled)
-    return made.data().data()
+    return bytes(made.data().data())
 
 
 def _buffer() -> QBuffer:

@@ -25,9 +25,9 @@ from app.inks import Inks, font
 from engine.outcome import Outcome
 
 from . import readout
-from .export import text_width
 from .geometry import Geometry, Look, Request, View, build
 from .hand import Grip, grip
+from .metrics import text_width
 from .paint import paint_moving, paint_still
 from .readout_box import paint_readout
 from .scale import Unit
