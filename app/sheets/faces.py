@@ -33,7 +33,7 @@ def wrapped(text: str, points: int, limit: float, strong: bool = False) -> list[
     """The text broken into lines no wider than `limit` points, between words; a longer word is broken inside."""
     lines: list[str] = []
     line = ""
-    for word in text.split():
+    for word in text.split(" "):  # not at a no-break space: a number keeps its unit
         for piece in _pieces(word, points, limit, strong):
             longer = f"{line} {piece}" if line else piece
             if line and width(longer, points, strong) > limit:

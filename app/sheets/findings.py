@@ -10,7 +10,7 @@ from engine.findings import Finding
 from engine.outcome import Outcome
 
 from . import faces
-from .flow import Block, pour, stacked
+from .flow import Block, column_width, columns_in, pour, stacked
 from .frame import body_area
 from .grid import Column, Grid, heading, paragraph
 from .page import BODY, HAIR, LARGE, SMALL, Box, Line, Page, Paper, Text
@@ -46,15 +46,16 @@ def pages(outcome: Outcome, paper: Paper) -> list[Page]:
         f"{sum(each.severity == severity for each in found)} {severity}"
         for severity in ("stop", "mend", "note")
     )
+    width = column_width(area[2])
     blocks = [
-        *_findings(outcome, area[2]),
-        *_seats(outcome, area[2]),
-        *_loudspeakers(outcome, area[2]),
-        _cautions(area[2]),
+        *_findings(outcome, width),
+        *_seats(outcome, width),
+        *_loudspeakers(outcome, width),
+        _cautions(width),
     ]
     return [
         Page(paper, "Findings and cautions", f"What was noticed: {counts}", tuple(items))
-        for items in pour(blocks, Block(0.0), area)
+        for items in pour(blocks, Block(0.0), area, columns_in(area[2]))
     ]
 
 

@@ -7,6 +7,11 @@ from dataclasses import dataclass
 
 from .page import Item, moved
 
+LEAST_COLUMN = 515.0  # of text and tables, in points: an upright A4 sheet holds one
+GUTTER = 26.0
+
+Area = tuple[float, float, float, float]
+
 
 @dataclass(frozen=True)
 class Block:
@@ -33,19 +38,46 @@ def stacked(blocks: Iterable[Block]) -> Block:
     return Block(y, tuple(items))
 
 
-def pour(blocks: Iterable[Block], head: Block, area: tuple[float, float, float, float]) -> list[list[Item]]:
-    """The blocks as items of one page after another, each page beginning with the head. At least one page."""
-    left, top, _, height = area
+def columns_in(width: float) -> int:
+    """How many columns of text a width takes: a line that runs over a whole wide page is hard to follow."""
+    return max(1, int((width + GUTTER) / (LEAST_COLUMN + GUTTER)))
+
+
+def column_width(width: float) -> float:
+    """The width of each of those columns, in points."""
+    count = columns_in(width)
+    return (width - GUTTER * (count - 1)) / count
+
+
+def pour(blocks: Iterable[Block], head: Block, area: Area, columns: int = 1) -> list[list[Item]]:
+    """The blocks as items of one page after another, column by column, each beginning with the head.
+
+    At least one page.
+    """
+    left, top, width, height = area
+    step = (width + GUTTER) / columns
+    filled = _columns(blocks, head, height)
+    return [
+        [
+            item
+            for place, column in enumerate(filled[first : first + columns])
+            for item in moved(column, left + step * place, top)
+        ]
+        for first in range(0, len(filled), columns)
+    ]
+
+
+def _columns(blocks: Iterable[Block], head: Block, height: float) -> list[list[Item]]:
     room = height - head.height
-    pages: list[list[Item]] = []
+    columns: list[list[Item]] = []
     used = room + 1.0
     for group in _bound(_broken(blocks, room), room):
-        if used + group.height > room or not pages:
-            pages.append(moved(head.items, left, top))
+        if used + group.height > room or not columns:
+            columns.append(list(head.items))
             used = 0.0
-        pages[-1] += moved(group.items, left, top + head.height + used)
+        columns[-1] += moved(group.items, 0.0, head.height + used)
         used += group.height
-    return pages or [moved(head.items, left, top)]
+    return columns or [list(head.items)]
 
 
 def _broken(blocks: Iterable[Block], room: float) -> Iterator[Block]:

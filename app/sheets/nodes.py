@@ -8,7 +8,7 @@ from app import tabular
 from engine.levels import NodeLevels
 from engine.outcome import Outcome
 
-from .flow import Block, pour
+from .flow import Block, column_width, columns_in, pour
 from .frame import body_area
 from .grid import Column, Grid
 from .page import HAIR, SMALL, Line, Page, Paper
@@ -29,10 +29,13 @@ _ROW = 12.0
 def pages(outcome: Outcome, paper: Paper) -> list[Page]:
     """Every node, heads repeated."""
     area = body_area(paper)
-    grid = node_grid(area[2])
+    grid = node_grid(column_width(area[2]))
     blocks = node_rows(outcome, outcome.nodes, grid)
     about = f"Programme, peak, clip point and noise at {len(outcome.nodes)} nodes, in signal order"
-    return [Page(paper, "Levels", about, tuple(items)) for items in pour(blocks, grid.head(), area)]
+    return [
+        Page(paper, "Levels", about, tuple(items))
+        for items in pour(blocks, grid.head(), area, columns_in(area[2]))
+    ]
 
 
 def node_grid(width: float) -> Grid:

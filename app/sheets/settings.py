@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Sequence
+from dataclasses import replace
 
 from engine.project import Project
 
 from . import faces
-from .flow import Block, pour, stacked
+from .flow import Block, column_width, columns_in, pour, stacked
 from .frame import body_area
 from .grid import Column, Grid, heading
 from .page import BODY, HAIR, LARGE, RULE, SMALL, Box, Item, Line, Page, Paper, Text
@@ -18,10 +19,10 @@ _NEXT_PANEL_LINE = 17.0
 _NEXT_LINE = 12.0
 _TICK = 12.0
 _COLUMNS = (
-    Column("done", 18.0),
-    Column("stage and its place", 96.0, 2.0),
-    Column("control", 90.0, 0.7),
-    Column("set to, as marked on the panel", 134.0, 1.5),
+    Column("done", 20.0),
+    Column("stage and its place", 92.0, 2.0),
+    Column("control", 78.0, 0.7),
+    Column("set to, as marked on the panel", 149.0, 1.5),
     Column("state", 50.0),
     Column("as found", 42.0, 2.0),
     Column("as left", 42.0, 2.0),
@@ -54,9 +55,15 @@ def rack_order_pages(project: Project, paper: Paper) -> list[Page]:
 
 def _pages(paper: Paper, title: str, about: str, blocks: Callable[[Grid], Iterable[Block]]) -> list[Page]:
     area = body_area(paper)
-    grid = Grid.over(area[2], _COLUMNS)
-    filled = [*blocks(grid), _sign_off(grid.width)]
-    return [Page(paper, title, about, tuple(items)) for items in pour(filled, grid.head(), area)]
+    grid = Grid.over(column_width(area[2]), _COLUMNS)
+    filled = list(blocks(grid))
+    if filled:
+        filled[-1] = replace(filled[-1], keep=True)
+    filled.append(_sign_off(grid.width))
+    return [
+        Page(paper, title, about, tuple(items))
+        for items in pour(filled, grid.head(), area, columns_in(area[2]))
+    ]
 
 
 def _about(groups: Sequence[StageSettings], order: str) -> str:

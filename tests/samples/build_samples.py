@@ -29,9 +29,13 @@ VENUES: dict[str, Callable[[], Project]] = {
 
 
 def frozen(outcome: Outcome) -> dict[str, Any]:
-    """The results of a venue to nine decimals, so that machines agree; findings by code, since wording may improve."""
+    """The results of a venue to nine decimals, so that machines agree; findings but notes by code, not by wording."""
     found = _rounded(record(outcome))
-    found["findings"] = sorted([each["severity"], each["code"], each["stage"]] for each in found["findings"])
+    found["findings"] = sorted(
+        [each["severity"], each["code"], each["stage"]]
+        for each in found["findings"]
+        if each["severity"] != "note"
+    )
     for seat in found["seats"]:
         seat["budget"] = {f"{line['stage']}: {line['origin']}": line["hiss"] for line in seat["budget"]}
     return dict(found)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from app.sheets.flow import Block, pour
+from app.sheets.flow import Block, columns_in, pour
 from app.sheets.page import Text
 
 AREA = (10.0, 20.0, 200.0, 100.0)
@@ -45,3 +45,25 @@ def test_a_block_taller_than_a_page_breaks_at_its_parts():
 
 def test_an_empty_sheet_is_one_page_with_its_head():
     assert texts(pour([], HEAD, AREA)) == [["head"]]
+
+
+def test_a_wide_page_takes_two_columns():
+    pages = pour([named(str(n), 40.0) for n in range(5)], HEAD, AREA, columns=2)
+    assert texts(pages) == [["head", "0", "1", "head", "2", "3"], ["head", "4"]]
+    lefts = {item.text: item.x for item in pages[0]}
+    assert lefts["0"] == AREA[0]
+    assert lefts["2"] == AREA[0] + (AREA[2] + 26.0) / 2
+
+
+def test_how_many_columns_a_paper_takes():
+    """A4 and Letter one either way, A3 two when it lies."""
+    from app.sheets.page import Paper
+
+    counts = {
+        (name, lying): columns_in(Paper(name, lying).inside[2])
+        for name in ("A4", "A3", "Letter")
+        for lying in (False, True)
+    }
+    assert counts == {
+        ("A4", False): 1, ("A4", True): 1, ("Letter", False): 1, ("Letter", True): 1, ("A3", False): 1, ("A3", True): 2,
+    }  # fmt: skip
