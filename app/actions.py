@@ -3,17 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
+from functools import partial
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 
+from .diagram.scale import UNITS
 from .inks import SCHEMES
 
 if TYPE_CHECKING:
     from .window import MainWindow
-
-UNITS = ("dBu", "dBV", "V")
 
 
 def make_actions(window: MainWindow) -> Mapping[str, QAction]:
@@ -90,7 +90,7 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
             f"unit {unit}",
             f"Levels in {unit}",
             units,
-            lambda unit=unit: window.set_unit(unit),
+            partial(window.set_unit, unit),
             f"Ctrl+{place + 1}",
             unit,
         )
@@ -113,7 +113,7 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
             f"scheme {scheme}",
             scheme[:1].upper() + scheme[1:],
             schemes,
-            lambda scheme=scheme: window.set_scheme(scheme),
+            partial(window.set_scheme, scheme),
         )
     touch = add("touch", "&Touch size", "", lambda: None)
     touch.setCheckable(True)

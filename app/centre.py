@@ -75,6 +75,13 @@ class Centre(QWidget):
         self._moving = False
         self._fitted = True
 
+    def show_main_path(self) -> None:
+        """Show the levels on the way to the reference seat, else to the first seat."""
+        seats = [self._document.project.stage[seat.stage] for seat in self._document.outcome.seats]
+        seats.sort(key=lambda seat: getattr(seat, "role", "") != "reference")
+        if seats:
+            self.diagram.show_path(seats[0].id)
+
     def share_out(self) -> None:
         """Give the path the height its rows need, as far as the diagram keeps most; not where a hand has set it."""
         if self.shared_out:
@@ -111,7 +118,8 @@ class Centre(QWidget):
         self.bar.setPageStep(max(1, self.path.width()))
         self.bar.setSingleStep(max(1, round(self.columns.pitch_px / 4)))
         self.bar.setValue(round(self.columns.scroll_px))
-        self.bar.setVisible(self.bar.maximum() > 0)
+        # The free column behind the last is there to drop on, not to read: no bar for it alone.
+        self.bar.setVisible(self.bar.maximum() > self.columns.pitch_px + 1.0)
         self._moving = moved
         if not moved:
             self._fitted = False

@@ -89,6 +89,7 @@ QPushButton:pressed, QToolButton:pressed, QPushButton:checked, QToolButton:check
 QPushButton:focus, QToolButton:focus {{ border-color: {accent}; }}
 QPushButton:disabled, QToolButton:disabled {{ color: {faint}; }}
 QPushButton[flat="true"], QToolButton[flat="true"] {{ border-color: transparent; }}
+QDialogButtonBox, QMessageBox {{ dialogbuttonbox-buttons-have-icons: 0; }}
 QToolButton[small="true"] {{ min-height: 20px; padding: 0 7px; }}
 QPushButton[primary="true"] {{ background: {tint}; border-color: {tint}; color: {accent}; font-weight: 600; }}
 QLineEdit, QPlainTextEdit, QTextEdit, QComboBox, QAbstractSpinBox {{ background: {raised}; color: {ink};

@@ -12,12 +12,13 @@ from PySide6.QtWidgets import QApplication, QDialog, QMainWindow, QSplitter, QVB
 from engine.project import HEADER_KEY
 
 from . import style
-from .actions import UNITS, make_actions
+from .actions import make_actions
 from .ask import Ask, Dialogs
 from .autosave import Autosave
 from .bottom_line import BottomLine
 from .centre import Centre
 from .columns import Columns
+from .diagram.scale import UNITS
 from .document import Document
 from .exports import Exports
 from .files import Files
@@ -35,6 +36,7 @@ if TYPE_CHECKING:
     from .diagram.scale import Unit
 
 USUAL_SIZE = (1366, 768)
+SHELF_PX = 192  # the longest title of a kind fits
 CHART_DELAY_MS = 30
 FIRST_START = (
     "Every number here is an estimate for a plan. Warn, clear, protect ears, start 20\u202fdB low; "
@@ -125,14 +127,14 @@ class MainWindow(QMainWindow):
         geometry = QByteArray.fromBase64(self.memory.text("geometry").encode())
         if not geometry.isEmpty():
             self.restoreGeometry(geometry)
-        self.across.setSizes([self.shelf.sizeHint().width(), self.width(), WIDTH_PX])
+        self.across.setSizes([SHELF_PX, self.width(), WIDTH_PX])
         for name, splitter in self._splitters().items():
             state = QByteArray.fromBase64(self.memory.text(f"splitter {name}").encode())
             if not state.isEmpty():
                 splitter.restoreState(state)
                 self.centre.shared_out |= splitter is self.centre.splitter
-        unit = self.memory.text("unit")
-        self.set_unit(unit if unit in UNITS else "dBu")
+        remembered = self.memory.text("unit")
+        self.set_unit(next((unit for unit in UNITS if unit == remembered), "dBu"))
         self.actions_["view levels"].setChecked(True)
         self.actions_[f"scheme {self.inks.name}"].setChecked(True)
         self.actions_["touch"].setChecked(self._touch)
@@ -160,6 +162,7 @@ class MainWindow(QMainWindow):
         self.notice.hide()
         self.centre.fit()
         self.centre.share_out()
+        self.centre.show_main_path()
 
     def set_unit(self, unit: Unit) -> None:
         """Show electrical levels in this unit."""
