@@ -195,15 +195,20 @@ class Layout:
         return len(stage.outputs() if hit.what == "output" else stage.inputs()) > 1
 
     def _port_near(self, near: list[str], x: float, y: float, reach: float) -> Hit | None:
-        """The nearest port; on its own block it reaches less far, so that the block can be grabbed."""
+        """The nearest port. On its own block it reaches less far, so that the block can be grabbed; where a link leads
+        there it leaves the middle of the gap to the link."""
+        pitch = self.columns.pitch_px
+        gap = pitch - (self.columns.x_out(0) - self.columns.x_in(0))
         best: tuple[float, Hit] | None = None
         for key in near:
+            linked = self.linked(key)
             for port, is_output, (at_x, at_y) in self.ports(key):
-                inwards = (at_x - x) if is_output else (x - at_x)
-                if inwards > min(reach, self.columns.pitch_px / 10.0) or abs(at_y - y) > reach:
+                outwards = (x - at_x) if is_output else (at_x - x)
+                furthest = min(reach, max(3.0, gap / 3.0)) if (is_output, port.name) in linked else reach
+                if not -min(reach, pitch / 10.0) <= outwards <= furthest or abs(at_y - y) > reach:
                     continue
-                away = max(abs(at_x - x), abs(at_y - y))
-                if away <= reach and (best is None or away < best[0]):
+                away = max(abs(outwards), abs(at_y - y))
+                if best is None or away < best[0]:
                     best = away, Hit("output" if is_output else "input", key, port.name, right=is_output)
         return best[1] if best else None
 

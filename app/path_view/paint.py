@@ -22,9 +22,7 @@ from .paint_preview import paint_note, paint_preview
 if TYPE_CHECKING:
     from .view import PathView
 
-EMPTY = (
-    "Drag a sound source from the shelf to here, or choose one there and press Enter, to begin a signal path."
-)
+EMPTY = "Drag a source from the shelf to here, or choose one there and press Enter, to begin a signal path."
 SPARE_PX = 16  # what a block's ring and count mark reach beyond it
 
 
@@ -45,8 +43,8 @@ def paint(painter: QPainter, view: PathView, area: QRect) -> None:
     _paint_said(painter, view)
     if view.hasFocus() and not view.current:
         painter.setBrush(Qt.BrushStyle.NoBrush)
-        painter.setPen(QPen(view.inks.accent, 2.0))
-        painter.drawRoundedRect(QRectF(view.rect()).adjusted(2, 2, -2, -2), 5.0, 5.0)
+        painter.setPen(QPen(view.inks.accent, 1.5))
+        painter.drawRoundedRect(QRectF(view.rect()).adjusted(3, 3, -3, -3), 5.0, 5.0)
 
 
 def _paint_empty(painter: QPainter, view: PathView) -> None:
@@ -68,7 +66,9 @@ def _paint_links(painter: QPainter, view: PathView, area: QRect) -> None:
         if link.id in selection:
             late.append(line)
         else:
-            paint_link(painter, line, view.inks, hovered=view.hand.hover.id == link.id, several=several)
+            on_path = (link.source, link.target) in view.shown
+            hovered = view.hand.hover.id == link.id
+            paint_link(painter, line, view.inks, hovered=hovered, several=several, on_path=on_path)
     for line in late:
         paint_link(painter, line, view.inks, selected=True)
 

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
+from itertools import pairwise
 
 from PySide6.QtCore import QEvent, QPoint, QRect, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import (
@@ -58,6 +59,7 @@ class PathView(QWidget):
         self.hand: Hand = Hand(self)
         self.current = ""  # the stage or link that the keyboard is at
         self.note, self.note_refused = "", False
+        self.shown: frozenset[tuple[str, str]] = frozenset()  # what feeds what on the path that is followed
         self._touch = Touch(self)
         self._field = InPlaceField(self)
         self._bar = QScrollBar(Qt.Orientation.Vertical, self)
@@ -98,6 +100,11 @@ class PathView(QWidget):
     def set_inks(self, inks: Inks) -> None:
         """Show in other colours."""
         self.inks = inks
+        self.update()
+
+    def show_path(self, path: Sequence[str]) -> None:
+        """Draw the links of one path stronger: the one that the level diagram follows."""
+        self.shown = frozenset(pairwise(path))
         self.update()
 
     def carry(self, kind: str, at: QPoint) -> bool:

@@ -9,6 +9,7 @@ from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QLineEdit, QMenu
 
 from app import edits
+from app.path_view.keys import described
 from engine.project import Project
 from tests.app.path_bench import LEFT, NONE, Bench
 from tests.app.simple_kinds import ends, places
@@ -342,6 +343,36 @@ def test_a_new_user_is_told_in_one_sentence_what_to_do(bench):
     empty = bench.path.grab().toImage()
     bench.build("mix_bus")
     assert bench.path.grab().toImage() != empty
+
+
+def test_the_path_that_the_diagram_follows_is_drawn_stronger(chain):
+    plain = chain.path.grab().toImage()
+    chain.path.show_path(CHAIN[:3])
+    assert chain.path.shown == {("line_source", "preamplifier"), ("preamplifier", "mix_bus")}
+    assert chain.path.grab().toImage() != plain
+
+
+def test_many_alike_are_marked_on_the_block(chain):
+    one = chain.path.grab().toImage()
+    chain.document.edit("Count", edits.set_count(chain.project, ["line_source", "preamplifier"], 8))
+    assert chain.path.grab().toImage() != one
+    assert "8 alike" in described(chain.project, "preamplifier", ())
+
+
+def test_in_every_gap_the_link_can_be_hit_and_both_ports_beside_it(chain):
+    for pitch_factor in (1.0, 0.6):
+        chain.columns.zoom_by(pitch_factor, 0.0)
+        assert chain.path.hit(*chain.on_link("preamplifier", "mix_bus").toTuple()).what == "link"
+        assert chain.path.hit(*chain.output("preamplifier").toTuple()).what == "output"
+        assert chain.path.hit(*chain.input("mix_bus").toTuple()).what == "input"
+        assert chain.path.hit(*chain.middle("mix_bus").toTuple()).what == "stage"
+
+
+def test_lines_of_the_shelf_are_44_px_for_fingers(bench):
+    bench.shelf.set_touch(True)
+    QApplication.processEvents()
+    heights = {bench.shelf.list.visualItemRect(bench.item(title)).height() for title in ("Mix bus", "Seat")}
+    assert heights == {44 + 4}
 
 
 # -- fingers -------------------------------------------------------------------------------------------------
