@@ -23,8 +23,14 @@ class CommandError(Exception):
 class Arguments(argparse.ArgumentParser):
     """Arguments of one command, with the project file first. Raises `CommandError` instead of leaving the program."""
 
-    def __init__(self, command: str, description: str) -> None:
-        super().__init__(prog=f"gainwright {command}", description=description, allow_abbrev=False)
+    def __init__(self, command: str, description: str, more: str = "") -> None:
+        super().__init__(
+            prog=f"gainwright {command}",
+            description=description,
+            epilog=more,
+            formatter_class=argparse.RawDescriptionHelpFormatter,
+            allow_abbrev=False,
+        )
         self.add_argument("file", metavar="FILE", type=Path, help="the project, a .gainwright file")
 
     def error(self, message: str) -> NoReturn:

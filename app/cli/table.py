@@ -14,10 +14,22 @@ if TYPE_CHECKING:
     from engine.outcome import Outcome
 
 
+_OBJECT = """\
+--json prints one object; numbers are unrounded, null where there is none:
+  nodes         stage (the id), name (its label), port (in or out), index (0 unless there are several), domain, unit,
+                level, peak, clip, ceiling, noise, noise_a in that unit; headroom, peak_margin, snr in dB
+  seats         stage, name, level, level_a, peak, hiss, hiss_a in dB SPL, hiss_margin in dB, budget: the largest
+                share first, each with stage, name, origin, hiss, hiss_a, share (0 to 1)
+  loudspeakers  stage, name, average_w, peak_w, continuous_margin_db, peak_margin_db
+  findings      severity (stop, mend or note), code, stage, message
+--csv prints the nodes, one a line, with the same names. The peak is sine-scaled: level + crest factor - 3.01 dB.
+"""
+
+
 @command
 def run(argv: Sequence[str]) -> int:
     """Print the table; status 0, or 2 where the file cannot be read."""
-    arguments = Arguments("table", "Print the level, clip point, noise and margins at every node.")
+    arguments = Arguments("table", "Print the level, clip point, noise and margins at every node.", _OBJECT)
     form = arguments.add_mutually_exclusive_group()
     form.add_argument("--json", action="store_true", help="one JSON object, numbers unrounded")
     form.add_argument("--csv", action="store_true", help="one line per node, numbers unrounded")

@@ -95,4 +95,10 @@ def _sentences(outcome: Outcome, path: Sequence[str]) -> list[str]:
             side = "under" if seat.hiss_margin >= 0.0 else "over"
             said += f", {words.margin(abs(seat.hiss_margin))} {side} the room ({seat.ambient.name})"
         found.append(f"{said}.")
+    count = len(outcome.assumptions.open)
+    if count:
+        figures = "figure leaves" if count == 1 else "figures leave"
+        found.append(
+            f"{count} {figures} something open: upright strokes show the range it makes; the findings name them."
+        )
     return found

@@ -15,8 +15,9 @@ from pathlib import Path
 import pypdf
 import pytest
 
-from app import tabular, words
+from app import tabular
 from app.cli import COMMANDS
+from app.diagram import readout
 from app.sheets.book import make_book
 from engine.outcome import Outcome, evaluate
 from engine.project import Project
@@ -177,22 +178,19 @@ def test_level_diagram_sheets_say_the_same(outcome, nodes, tmp_path, qapp):
             )
 
 
-def test_words_of_the_window_are_those_of_paper(outcome):
-    """The window words a level with its unit, paper puts the unit in a column of its own: the same number."""
-    for node in outcome.nodes:
-        cells = dict(
-            zip(
-                [c.heading for c in tabular.NODE_COLUMNS],
-                [c.text(node) for c in tabular.NODE_COLUMNS],
-                strict=True,
-            )
-        )
-        assert words.level(node.level, node.unit, muted=node.muted) == words.with_unit(
-            cells["level"], cells["unit"]
-        )
-        assert words.level(node.clip, node.unit) == words.with_unit(cells["clip"], cells["unit"])
-        assert words.margin(node.headroom) == words.with_unit(cells["headroom"], "dB")
-        assert words.level(node.noise, node.unit) == words.with_unit(cells["noise"], cells["unit"])
+def test_the_window_says_the_same(outcome, nodes):
+    """What stands over a node in the diagram, with units; paper and table keep the unit in a column of its own."""
+    labels = {
+        "level": "level", "peak": "peak", "clip": "clip point", "ceiling": "usable ceiling", "headroom": "headroom",
+        "peak_margin": "peak margin", "noise": "noise", "noise_a": "noise, A-weighted", "snr": "S/N",
+    }  # fmt: skip
+    for node, record in zip(outcome.nodes, nodes, strict=True):
+        shown = dict(readout.lines(node))
+        for (key, label), text in zip(labels.items(), said(record)[1:], strict=True):
+            unit = "dB" if key in ("headroom", "peak_margin", "snr") else record["unit"]
+            expected = text if text in ("–", "muted") else f"{text}\u202f{unit}"
+            assert shown.get(label, "–") in (expected, "muted"), (node.name, label)
+            assert (shown.get(label) == "muted") <= (record[key] is None)
 
 
 def test_unrounded_numbers_hold_together(nodes):
