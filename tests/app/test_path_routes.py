@@ -29,6 +29,22 @@ def runs(layout: Layout):
             yield link, start, end
 
 
+def off_blocks(layout: Layout) -> bool:
+    """Whether every run is level or upright and touches no block but at its ends; fails naming the pair."""
+    boxes = {stage.id: layout.box(stage.id) for stage in layout.project.stages}
+    for link, (ax, ay), (bx, by) in runs(layout):
+        assert ax == pytest.approx(bx) or ay == pytest.approx(by)
+        for key, (left, top, width, height) in boxes.items():
+            crosses = (
+                min(ax, bx) < left + width - 1
+                and max(ax, bx) > left + 1
+                and min(ay, by) < top + height - 1
+                and max(ay, by) > top + 1
+            )
+            assert not crosses, f"{link.id} runs through {key}"
+    return True
+
+
 STEP = st.tuples(st.integers(0, 3), st.sampled_from(sorted(SIMPLE)), st.integers(0, 99))
 
 
@@ -57,18 +73,7 @@ def grown(steps: list[tuple[int, str, int]]) -> Project:
 
 @given(st.lists(STEP, max_size=30))
 def test_links_turn_at_right_angles_and_keep_off_blocks(steps):
-    layout = Layout(grown(steps), Columns())
-    boxes = {stage.id: layout.box(stage.id) for stage in layout.project.stages}
-    for link, (ax, ay), (bx, by) in runs(layout):
-        assert ax == pytest.approx(bx) or ay == pytest.approx(by)
-        for key, (left, top, width, height) in boxes.items():
-            crosses = (
-                min(ax, bx) < left + width - 1
-                and max(ax, bx) > left + 1
-                and min(ay, by) < top + height - 1
-                and max(ay, by) > top + 1
-            )
-            assert not crosses, f"{link.id} runs through {key}"
+    assert off_blocks(Layout(grown(steps), Columns()))
 
 
 @given(st.lists(STEP, max_size=30))
@@ -92,3 +97,23 @@ def test_every_port_stands_on_its_blocks_edge():
     assert all(x == left + width and top < y < top + height for x, y in seen)
     assert seen[0][1] == top + height / 2
     assert len({y for _x, y in seen}) == 3
+
+
+def test_a_link_past_a_block_in_its_own_row_goes_under_it():
+    project = chain("divider", "gain", "gain", "summing")
+    for output in ("out_2", "out_3"):
+        target = "summing" if output == "out_2" else "gain_2"
+        if output == "out_3":
+            link = next(each for each in project.links if each.target == "gain_2")
+            project = project.with_changes(edits.delete(project, {link.id}))
+        project = project.with_changes(edits.add_link(project, "divider", output, target, "in"))
+    layout = Layout(project, Columns())
+    assert off_blocks(layout)
+    under = {
+        link.id: layout.line(link) for link in project.links if layout.routes[link.id].row_gap is not None
+    }
+    assert len(under) == 2
+    levels = {line[2][1] for line in under.values()}
+    _, top, _, height = layout.box("gain")
+    assert len(levels) == 2, "each has a lane of its own"
+    assert all(top + height < level < top + layout.scale.row_px for level in levels)
