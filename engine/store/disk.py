@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import glob
 import os
 import secrets
 import stat
+import time
 from contextlib import suppress
 from pathlib import Path
 
@@ -13,6 +15,8 @@ from engine.project import Project
 from .errors import StoreError
 from .opening import from_text
 from .text import MAX_BYTES, to_text
+
+UNFINISHED_S = 60.0  # a temporary file this old is nobody's any more
 
 
 def read(path: Path) -> tuple[Project, tuple[str, ...]]:
@@ -59,6 +63,15 @@ def write(path: Path, project: Project) -> None:
             draft.unlink()
         raise
     _settle(target.parent)
+    _clear_unfinished(target)
+
+
+def _clear_unfinished(target: Path) -> None:
+    """Take away what earlier writes of this file left when their process was killed."""
+    with suppress(OSError):
+        for draft in target.parent.glob(f".{glob.escape(target.name[:200])}.*.part"):
+            if time.time() - draft.stat().st_mtime > UNFINISHED_S:
+                draft.unlink()
 
 
 def _status(target: Path) -> os.stat_result | None:

@@ -339,6 +339,18 @@ def test_a_symbolic_link_is_followed_and_kept(tmp_path: Path):
     assert {each.name for each in tmp_path.iterdir()} == {"real", "b.gainwright"}
 
 
+def test_what_a_killed_write_left_is_cleared_by_the_next(tmp_path: Path):
+    file, left, fresh = (
+        tmp_path / name for name in ("a[1].gainwright", ".a[1].gainwright.0.part", ".a[1].gainwright.1.part")
+    )
+    for each in (left, fresh):
+        each.write_text("{", encoding="utf-8")
+    os.utime(left, (0, 0))
+    write(file, small())
+    assert not left.exists()
+    assert fresh.exists(), "another process may be at it just now"
+
+
 @pytest.mark.skipif(os.name == "nt", reason="POSIX permissions")
 def test_permissions_are_kept(tmp_path: Path):
     file = tmp_path / "a.gainwright"
