@@ -132,7 +132,7 @@ def clipping(tmp_path):
         stage.id: (
             stage,
             stage.with_fields(level_spl=stage.level_spl.model_copy(update={"text": "140 dB SPL"})),
-        )  # type: ignore[attr-defined]
+        )
         for stage in sources
     }
     path = tmp_path / "loud.gainwright"

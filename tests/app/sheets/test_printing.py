@@ -51,7 +51,7 @@ def test_the_paper_in_the_printer_is_known(paper):
 def test_the_preview_paints_the_pages(printer, theatre_outcome, qtbot):
     dialog = preview_dialog(printer, theatre_outcome, ["findings"])
     qtbot.addWidget(dialog)
-    asked = []
+    asked: list[object] = []
     dialog.paintRequested.connect(asked.append)
     dialog.paintRequested.emit(printer)
     assert asked
