@@ -33,12 +33,24 @@ class DraftRow:
     extra: list[tuple[int, float]] = field(default_factory=list)  # covariance rows of a join, with weights
 
 
+@dataclass(frozen=True)
+class NetPair:
+    """A covariance row of two nodes of one net, which both hear the thermal noise of the same resistances."""
+
+    row: int
+    one: int
+    other: int
+    unlike: bool
+
+
 @dataclass
 class Draft:
     """The list of rows, silence first, and the covariance rows found so far."""
 
     rows: list[DraftRow] = field(default_factory=lambda: [DraftRow(Sort.SINGLE, [])])
     group_size: dict[str, int] = field(default_factory=dict)
+    net_of: dict[int, int] = field(default_factory=dict)  # the net a row is a node of
+    net_pairs: list[NetPair] = field(default_factory=list)
     _pairs: dict[tuple[int, int, bool], int] = field(default_factory=dict)
     _splits: list[int] | None = None
 
@@ -94,7 +106,8 @@ class Draft:
         """The row that carries the covariance of two rows; silence where they have nothing in common.
 
         `unlike` asks for two different members of one group. The later row is taken apart: what it adds of its
-        own is independent of the other, so only its parents' covariance counts, times its amplitude gain.
+        own is independent of the other, so only its parents' covariance counts, times its amplitude gain. But two nodes
+        of one net share the thermal noise of its resistances: such pairs are listed, and their rows add it.
         """
         if one == two and not unlike:
             return one
@@ -106,6 +119,9 @@ class Draft:
             self._pairs[key] = (
                 self._twin(late) if late == early else self._taken_apart(late, early, unlike=unlike)
             )
+            nets = [self.net_of.get(row) for row in (late, early)]
+            if self._pairs[key] != SILENCE and None not in nets and nets[0] == nets[1]:
+                self.net_pairs.append(NetPair(self._pairs[key], late, early, unlike))
         return self._pairs[key]
 
     def _twin(self, row: int) -> int:

@@ -15,6 +15,7 @@ from engine.rows import Array, NoisePart, Origin, Rows
 from engine.sections.base import NEVER, ActiveStage, Domain, Dynamics, Output, PassiveStage, StageSections
 from engine.sections.curves import clip_at_load
 from engine.sections.net import Edge
+from engine.sections.thermal import Thermal
 from engine.stages import Values
 
 from .layout import Layout, NetRows
@@ -115,31 +116,35 @@ def fill_stage(
 
 
 def fill_net(
-    table: Table,
-    net: NetRows,
-    place: Index,
-    project: Project,
-    answers: Mapping[str, StageSections],
-    axis: Axis,
-) -> None:
-    """Write a net's transfers from each driver to each node, and its thermal noise at each node."""
+    table: Table, layout: Layout, net: NetRows, place: Index, project: Project,
+    answers: Mapping[str, StageSections], axis: Axis,
+) -> None:  # fmt: skip
+    """Write a net's transfers from each driver to each node, and its thermal noise at each node and between nodes."""
     solved = net.shape.with_numbers(answers, project.header.temperature_k)
+    thermal = Thermal(solved, net.shape.group, layout.draft.group_size)
     noisy = [edge for edge in solved.edges if edge.owner is not None and _dissipates(edge)]
     for node, drafted in net.total.items():
         for place_, (stage, port, _) in enumerate(net.shape.drivers):
             row = int(place[net.by_driver[place_, node]])
             table.gain[row] = np.abs(np.asarray(solved.transfer(place_, node))) ** 2
             table.clip_out[row] = _clip_behind_link(net, answers, stage, port, node, table.gain[row])
-        densities = [
-            (Origin(str(edge.owner), "thermal"), edge, solved.noise_v2_per_hz(edge, node)) for edge in noisy
-        ]
-        table.put_noise(
-            int(place[drafted]), ((origin, np.asarray(d) * axis.width_hz) for origin, _, d in densities)
+        parts = ((Origin(str(edge.owner), "thermal"), thermal.v2_per_hz(edge, node, node)) for edge in noisy)
+        table.put_noise(int(place[drafted]), ((origin, np.asarray(d) * axis.width_hz) for origin, d in parts))
+    for pair, one, other, unlike in net.pairs:
+        parts = (
+            (Origin(str(edge.owner), "thermal"), thermal.v2_per_hz(edge, one, other, unlike=unlike))
+            for edge in noisy
         )
+        table.put_noise(int(place[pair]), ((origin, np.asarray(d) * axis.width_hz) for origin, d in parts))
 
 
 def fill_clip_by_load(
-    table: Table, layout: Layout, net: NetRows, place: Index, project: Project, answers: Mapping[str, StageSections]
+    table: Table,
+    layout: Layout,
+    net: NetRows,
+    place: Index,
+    project: Project,
+    answers: Mapping[str, StageSections],
 ) -> None:
     """Write the clip points of outputs that are rated at several loads, for the load their net turns out to be.
 
@@ -192,7 +197,9 @@ def _own_clip(answer: ActiveStage, output: str) -> Array | float:
     carried = np.minimum(_per_setting(section.clip_in), NEVER if ahead is None else _own_clip(answer, ahead))
     gain = np.asarray(section.gain)
     at_tone = gain[..., TONE] if gain.ndim and gain.shape[-1] > 1 else _per_setting(gain)
-    behind = np.where(np.asarray(at_tone) > 0.0, np.where(np.isfinite(carried), carried, 0.0) * at_tone, NEVER)
+    behind = np.where(
+        np.asarray(at_tone) > 0.0, np.where(np.isfinite(carried), carried, 0.0) * at_tone, NEVER
+    )
     return np.asarray(np.where(np.isfinite(own), own, np.where(np.isfinite(carried), behind, NEVER)))
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections import defaultdict
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from engine.project import Link, Project
 from engine.sections.base import Active, ActiveStage, Domain, PassiveStage, StageSections
@@ -24,6 +24,7 @@ class NetRows:
     shape: NetShape
     by_driver: Mapping[tuple[int, Node], int]
     total: Mapping[Node, int]
+    pairs: tuple[tuple[int, Node, Node, bool], ...] = ()  # covariance rows: row, two nodes, of unlike members
 
 
 @dataclass
@@ -89,7 +90,20 @@ def lay_out(project: Project, answers: Mapping[str, StageSections]) -> Layout:
                     _add_net(layout, driven)
     _name_net_nodes(layout, project, answers, same)
     layout.draft.find_shared()
+    _give_pairs(layout)
     return layout
+
+
+def _give_pairs(layout: Layout) -> None:
+    """Tell each net the covariance rows between its own nodes."""
+    node_of = {row: node for net in layout.nets for node, row in net.total.items()}
+    pairs: dict[int, list[tuple[int, Node, Node, bool]]] = defaultdict(list)
+    for pair in layout.draft.net_pairs:
+        pairs[layout.draft.net_of[pair.one]].append(
+            (pair.row, node_of[pair.one], node_of[pair.other], pair.unlike)
+        )
+    for index, found in pairs.items():
+        layout.nets[index] = replace(layout.nets[index], pairs=tuple(found))
 
 
 def _row_of(layout: Layout, answer: ActiveStage, key: str, section: str) -> int:
@@ -188,6 +202,7 @@ def _add_net(layout: Layout, shape: NetShape) -> None:
                     if members > 1:
                         layout.draft.rows[row].group = shape.group[at]
             total[node] = layout.draft.add_join(heard, shape.group[node], "origin")
+    layout.draft.net_of.update(dict.fromkeys(total.values(), len(layout.nets)))
     layout.nets.append(NetRows(shape, by_driver, total))
     layout.node_rows.update(total)
 

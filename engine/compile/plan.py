@@ -129,7 +129,9 @@ def redrawn(plan: Plan, overrides: Mapping[str, Values], batch: int) -> Plan:
     fresh = {key: _answer(plan.project, key, plan.axis, overrides) for key in plan.answers}
     for key, answer in fresh.items():
         if _shape(answer) != _shape(plan.answers[key]):
-            raise ValueError(f"{key}: other values make other sections, so the project has to be compiled anew")
+            raise ValueError(
+                f"{key}: other values make other sections, so the project has to be compiled anew"
+            )
     rows = _filled(plan.project, plan.axis, plan.graph, plan.layout, plan.place, fresh, overrides, batch)
     return replace(plan, rows=rows, answers=fresh, overrides=dict(overrides), batch=batch)
 
@@ -142,7 +144,7 @@ def _filled(
     for stage in answers:
         fill_stage(table, layout, place, answers, stage, axis)
     for net in layout.nets:
-        fill_net(table, net, place, project, answers, axis)
+        fill_net(table, layout, net, place, project, answers, axis)
         fill_clip_by_load(table, layout, net, place, project, answers)
     fill_arrivals(table, layout, place, project, answers, axis, project.links, overrides)
     fill_pairs(table, graph)
@@ -180,7 +182,7 @@ def rewritten(plan: Plan, project: Project, changed: Iterable[str]) -> Plan | No
             key in net.shape.stages and _impedances(answers[key]) != _impedances(plan.answers[key])
             for key in stages
         ):
-            fill_net(table, net, plan.place, project, answers, plan.axis)
+            fill_net(table, plan.layout, net, plan.place, project, answers, plan.axis)
         fill_clip_by_load(table, plan.layout, net, plan.place, project, answers)
     near = {
         link.id for link in project.links if link.id in changed or link.target in changed or link.source in changed
@@ -230,7 +232,9 @@ def _impedances(answer: StageSections) -> object:
             for two in (*answer.arms.values(), *answer.legs.values())
             for term in (two.a, two.b, two.c, two.d)
         ]
-    impedances = [port.z_ohm for port in answer.inputs.values()] + [port.z_ohm for port in answer.outputs.values()]
+    impedances = [port.z_ohm for port in answer.inputs.values()] + [
+        port.z_ohm for port in answer.outputs.values()
+    ]
     return [np.asarray(number).tobytes() for number in impedances]
 
 

@@ -6,11 +6,6 @@ from u, with Y' the admittance at v of all that lies beyond:
 
     look(u, v)  = (C + D Y') / (A + B Y')     the admittance u sees through the edge
     step(u, v)  = 1 / (A + B Y')              V_v / V_u when the net is driven from u's side
-
-The thermal noise a two-port adds at its far end, everything else noiseless, is Nyquist's: the open-circuit EMF squared
-is 4kT [Re(Z_out) - Re(Z_s) |a|^2], a = 1 / (A + C Z_s) the open-circuit transfer from what drives it (Nyquist 1928,
-a two-port at one temperature). So a passive source's net comes to 4kT Re(Z_th), and an active device's noiseless
-output impedance adds none.
 """
 
 from __future__ import annotations
@@ -22,8 +17,6 @@ from itertools import pairwise
 from typing import Any
 
 import numpy as np
-
-from engine.units import BOLTZMANN_J_PER_K
 
 from .base import Complex, Number, TwoPort
 
@@ -137,32 +130,6 @@ class Net:
         while trail[-1] != start:
             trail.append(came[trail[-1]])
         return trail[::-1]
-
-    # -- noise -----------------------------------------------------------------------------------------------
-    def noise_v2_per_hz(self, edge: Edge, node: Node) -> Number:
-        """Thermal noise density at `node` [V²/Hz] of the resistances in one two-port."""
-        near, far = (
-            (edge.near, edge.far) if self._is_beyond(edge.near, edge.far, node) else (edge.far, edge.near)
-        )
-        two = self._facing(near, far)
-        feeding = self.at(near, away_from=far)
-        turned = two.c + two.a * feeding
-        bare = (
-            np.abs(np.asarray(turned)) < 1e-30
-        )  # nothing feeds it and nothing shunts it: no noise current flows
-        turned = np.where(bare, 1.0, turned)
-        z_out = (two.d + two.b * feeding) / turned
-        emf2 = np.where(bare, 0.0, np.real(z_out) - np.real(feeding) / np.abs(turned) ** 2)
-        loaded = 1.0 / (1.0 + z_out * self.at(far, away_from=near))
-        reach = loaded * self.path(far, node)
-        return np.asarray(
-            4.0 * BOLTZMANN_J_PER_K * self.temperature_k * np.maximum(emf2, 0.0) * np.abs(reach) ** 2
-        )
-
-    def _is_beyond(self, near: Node, far: Node, node: Node) -> bool:
-        """Whether `node` lies on `far`'s side of the edge."""
-        way = self.way(near, node)
-        return len(way) > 1 and way[1] == far
 
     def _edge(self, near: Node, far: Node) -> Edge:
         return next(edge for other, edge in self._beside[near] if other == far)
