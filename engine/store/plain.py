@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import cache
 from typing import Any
 
 from pydantic import BaseModel
@@ -16,18 +17,23 @@ def plain(model: BaseModel) -> dict[str, Any]:
     and would be read as empty.
     """
     content: dict[str, Any] = {}
-    for name, declared in type(model).model_fields.items():
-        value = getattr(model, name)
-        if value is None and declared.default is None:
+    values = model.__dict__
+    for name, may_go_unsaid in _fields(type(model)):
+        value = values[name]
+        if value is None and may_go_unsaid:
             continue
-        content[name] = _value(value)
-    content.update(sorted((model.__pydantic_extra__ or {}).items()))
+        if isinstance(value, BaseModel):
+            content[name] = plain(value)
+        elif isinstance(value, tuple):
+            content[name] = [plain(each) if isinstance(each, BaseModel) else each for each in value]
+        else:
+            content[name] = value
+    if model.__pydantic_extra__:
+        content.update(sorted(model.__pydantic_extra__.items()))
     return content
 
 
-def _value(value: object) -> Any:
-    if isinstance(value, BaseModel):
-        return plain(value)
-    if isinstance(value, tuple):
-        return [_value(each) for each in value]
-    return value
+@cache
+def _fields(kind: type[BaseModel]) -> tuple[tuple[str, bool], ...]:
+    """Each field's name, and whether an empty one is read as empty when it is left out."""
+    return tuple((name, declared.default is None) for name, declared in kind.model_fields.items())
