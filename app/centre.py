@@ -47,6 +47,7 @@ class Centre(QWidget):
         columns.changed.connect(self._columns_changed)
         document.changed.connect(self._measure)
         self.splitter.splitterMoved.connect(self._shared_by_hand)
+        self.diagram.path_changed.connect(self.path.show_path)
         self.path.installEventFilter(self)
         self._measure()
 
