@@ -152,8 +152,10 @@ class Declared(BaseModel):
                 yield name, spec, given, "anything in the range given"
 
     def with_control(self, name: str, value: float | None) -> Self:
-        """The same stage with one control moved."""
-        return self.with_fields(**{name: getattr(self, name).model_copy(update={"value": value})})
+        """The same stage with one control moved; a person's own panel marking held for the old position only."""
+        setting: Setting = getattr(self, name)
+        panel = setting.panel if value == setting.value else None
+        return self.with_fields(**{name: setting.model_copy(update={"value": value, "panel": panel})})
 
     def with_fields(self, **changes: Any) -> Self:
         """The same stage with some fields changed, validated again."""

@@ -17,10 +17,8 @@ def marking(spec: ControlSpec, ranged: ControlRange, setting: Setting) -> str:
     """
     if setting.panel:
         return setting.panel
-    if ranged.choices:
-        return _named(ranged, setting)
-    if setting.value is None:
-        return "off"
+    if ranged.choices or setting.value is None:
+        return position(spec, ranged, setting)
     if spec.marking == "detent":
         first = 1 if ranged.off_at_low else 0
         return f"detent {round((setting.value - ranged.low) / ranged.step) + first}"
@@ -28,6 +26,13 @@ def marking(spec: ControlSpec, ranged: ControlRange, setting: Setting) -> str:
         span = ranged.high - ranged.low
         return clock((setting.value - ranged.low) / span if span > 0.0 else 0.0)
     return _number(spec, ranged, setting.value)
+
+
+def position(spec: ControlSpec, ranged: ControlRange, setting: Setting) -> str:
+    """Where a control stands in its own unit: "−8.0 dB", "off", or the name of a switch's position."""
+    if ranged.choices:
+        return _named(ranged, setting)
+    return "off" if setting.value is None else _number(spec, ranged, setting.value)
 
 
 def clock(turn: float) -> str:
