@@ -55,6 +55,8 @@ class Thermal:
         here, there = self._at(edge, one), self._at(edge, other)
         if inside is None:
             return self._together(edge, here, there)
+        if self._shared(edge) is None:  # members alike that hang on nothing together hear nothing of one another
+            return 0.0 if unlike else self._together(edge, here, there)
         count = self.size[inside]
         is_in, other_in = self.group[one] == inside, self.group[other] == inside
         if not is_in and not other_in:
@@ -107,14 +109,15 @@ class Thermal:
     def _across(self, edge: Edge, node: Node) -> Heard:
         """What a member's node hears of the same two-port in another member."""
         shared = self._shared(edge)
+        assert shared is not None
         return self._at(edge, shared).times(self.net.path(shared, node))
 
-    def _shared(self, edge: Edge) -> Node:
-        """The node outside a group that its members hang on."""
+    def _shared(self, edge: Edge) -> Node | None:
+        """The node outside a group that its members hang on; None where each member has a net of its own."""
         found = []
         for border in self.net.edges:
             if border.copies > 1:
                 outside = border.far if border.mirrored else border.near
                 way = self.net.way(edge.near, outside)
                 found.append((len(way), outside))
-        return min(found, key=lambda each: each[0])[1]
+        return min(found, key=lambda each: each[0])[1] if found else None
