@@ -148,6 +148,17 @@ def shunt(z_ohm: Complex) -> TwoPort:
     return TwoPort(c=1.0 / z_ohm)
 
 
+def spread_line(z_ohm: Complex, y_s: Complex) -> TwoPort:
+    """A line whose series impedance and shunt admittance are spread evenly along it.
+
+    A = D = cosh g, B = Z sinh g / g, C = Y sinh g / g with g² = Z Y (telegrapher's equations; Heaviside 1885).
+    """
+    g = np.sqrt(np.asarray(z_ohm * y_s, dtype=complex))
+    is_short = np.abs(g) < 1e-6
+    shape = np.where(is_short, 1.0, np.sinh(g) / np.where(is_short, 1.0, g))
+    return TwoPort(np.cosh(g), z_ohm * shape, y_s * shape, np.cosh(g))
+
+
 def ideal_transformer(ratio: Complex) -> TwoPort:
     """A step-down of `ratio` : 1 in voltage."""
     return TwoPort(a=ratio, d=1.0 / ratio)

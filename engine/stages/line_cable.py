@@ -8,7 +8,7 @@ import numpy as np
 
 from engine.bands import Axis
 from engine.figures import Figure
-from engine.sections.base import Domain, PassiveStage, StageSections, series, shunt
+from engine.sections.base import Domain, PassiveStage, StageSections, TwoPort, spread_line
 
 from .base import Port, Stage
 from .declare import figure
@@ -16,7 +16,7 @@ from .declared import Values
 
 
 class LineCable(Stage):
-    """Loop resistance and capacitance: half the resistance, all the capacitance, the other half."""
+    """Loop resistance and capacitance, spread evenly along the cable."""
 
     title: ClassVar[str] = "Line cable"
     family: ClassVar[str] = "Lines"
@@ -47,10 +47,9 @@ class LineCable(Stage):
 
     def sections(self, values: Values, axis: Axis) -> StageSections:
         both = 2.0 if values.tag("resistance_ohm_per_m.reference") == "one-way" else 1.0
-        half = series(np.asarray(values["resistance_ohm_per_m"]) * values["length_m"] * both / 2.0)
+        ohm = np.asarray(values["resistance_ohm_per_m"]) * values["length_m"] * both
         farad = np.asarray(values["capacitance_f_per_m"]) * values["length_m"]
-        admittance = 2j * np.pi * axis.f_hz * np.maximum(farad, 1e-18)
-        return PassiveStage({"in": half @ shunt(1.0 / admittance)}, {"out": half})
+        return PassiveStage({"in": spread_line(ohm, 2j * np.pi * axis.f_hz * farad)}, {"out": TwoPort()})
 
     def summary(self) -> str:
         return self.length_m.text

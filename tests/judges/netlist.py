@@ -19,6 +19,8 @@ BOLTZMANN_J_PER_K = 1.380649e-23
 BAND_HZ = 19_980.0
 #: White noise 20 Hz to 20 kHz reads this much less A-weighted (integral of IEC 61672-1's formula).
 A_ON_WHITE_DB = -2.046
+#: How many pieces a cable is cut into.
+PIECES = 16
 
 Stage = Mapping[str, Any]
 #: A node of the project: stage, "in" or "out", port.
@@ -75,6 +77,22 @@ class Circuit:
             self.lines.append(f"{self.new('E')} {made} {below} {each} 0 1")
             below = made
         return below
+
+    def wire(self, one: str, two: str) -> None:
+        """The same node under two names."""
+        self.lines.append(f"{self.new('V')} {one} {two} 0")
+
+    def transformer(self, primary: str, ratio: float) -> str:
+        """The secondary of an ideal transformer of `ratio` : 1."""
+        made, sensed, sense = self.new("n"), self.new("n"), self.new("V")
+        self.lines.append(f"{self.new('E')} {sensed} 0 {primary} 0 {1.0 / ratio:.15g}")
+        self.lines.append(f"{sense} {sensed} {made} 0")
+        self.lines.append(f"{self.new('F')} {primary} 0 {sense} {1.0 / ratio:.15g}")
+        return made
+
+    def thermal_v2(self, ohm: float) -> float:
+        """Open-circuit thermal noise of a resistance over the whole band [V²]."""
+        return 4.0 * BOLTZMANN_J_PER_K * self.temperature_k * ohm * BAND_HZ
 
     def hiss(self, one: str, noise_v: float) -> str:
         """A new node: the voltage of `one` with white noise of `noise_v` over the whole band added."""
@@ -193,7 +211,7 @@ def pad(circuit: Circuit, stage: Stage, ports: Ports) -> None:
     node, out = pass_in(circuit, stage, ports), circuit.node((stage["id"], "out", "out"))
     z_ohm, k = amount(stage, "z_ohm", "impedance"), times(amount(stage, "loss_db", "loss"))
     if not setting(stage, "inserted"):
-        circuit.lines.append(f"{circuit.new('V')} {node} {out} 0")
+        circuit.wire(node, out)
     elif stage["shape"] == "U":
         circuit.resistor(node, out, z_ohm * (1.0 - 1.0 / k), noisy=True)
         circuit.resistor(out, "0", z_ohm / k, noisy=True)
@@ -227,9 +245,123 @@ def line_source(circuit: Circuit, stage: Stage, ports: Ports) -> None:
     leave(circuit, stage, circuit.amplify(node, times(-drop_db)), out_ohm, noisy=stage.get("noise") is None)
 
 
-def device_ein_v(circuit: Circuit, stage: Stage, name: str = "ein") -> float:
-    """A device's own input noise: its EIN without the thermal part of the source it was measured with."""
-    parsed = parse(stage[name]["text"], "ein")
+@writes("line_cable")
+def line_cable(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """A ladder of sixteen pieces, as the cable is in truth."""
+    node, out = pass_in(circuit, stage, ports), circuit.node((stage["id"], "out", "out"))
+    length, resistance = (
+        amount(stage, "length_m", "length"),
+        parse(stage["resistance_ohm_per_m"]["text"], "resistance_per_length"),
+    )
+    ohm = resistance.amount * length * (2.0 if resistance.reference == "one-way" else 1.0)
+    farad = amount(stage, "capacitance_f_per_m", "capacitance_per_length") * length
+    for piece in range(PIECES):
+        after = out if piece == PIECES - 1 else circuit.new("n")
+        middle = circuit.new("n")
+        circuit.resistor(node, middle, ohm / PIECES / 2.0, noisy=True)
+        circuit.capacitor(middle, "0", farad / PIECES)
+        circuit.resistor(middle, after, ohm / PIECES / 2.0, noisy=True)
+        node = after
+
+
+@writes("speaker_line")
+def speaker_line(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    node, out = pass_in(circuit, stage, ports), circuit.node((stage["id"], "out", "out"))
+    ohm = 2.0 * 0.0172 * amount(stage, "length_m", "length") / amount(stage, "area_mm2", "area")
+    circuit.resistor(node, out, ohm, noisy=True)
+
+
+@writes("splitter")
+def splitter(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    node = pass_in(circuit, stage, ports)
+    for way in range(1, stage["ways"] + 1):
+        out = circuit.node((stage["id"], "out", "out" if way == 1 else f"out_{way}"))
+        if stage["build"] == "parallel" or (stage["build"] == "transformer" and way == 1):
+            circuit.wire(node, out)
+        elif stage["build"] == "resistive":
+            circuit.resistor(node, out, amount(stage, "leg_ohm", "impedance"), noisy=True)
+        else:
+            secondary = circuit.transformer(node, times(amount(stage, "loss_db", "loss")))
+            circuit.resistor(secondary, out, amount(stage, "leg_ohm", "impedance"), noisy=True)
+
+
+@writes("combiner")
+def combiner(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """Resistive: each leg to one point, which is the stage's input and output alike."""
+    out = circuit.node((stage["id"], "out", "out"))
+    for node in ports["in"]:
+        circuit.resistor(node, out, amount(stage, "leg_ohm", "impedance"), noisy=True)
+
+
+@writes("preamplifier")
+def preamplifier(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """EIN ahead of the gain; behind it what the residual at lowest gain holds beyond EIN and its source."""
+    node = enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))
+    (ein,) = stage["ein_v"]
+    own_v, source_ohm = device_ein(circuit, ein["text"])
+    if setting(stage, "pad"):
+        loss = times(amount(stage, "pad_db", "loss"))
+        node = circuit.amplify(node, 1.0 / loss)
+        node = circuit.hiss(node, sqrt(circuit.thermal_v2(source_ohm) * (1.0 - 1.0 / loss**2)))
+    node = circuit.amplify(circuit.hiss(node, own_v), times(setting(stage, "gain_db")))
+    lowest = times(amount(stage, "gain_min_db", "gain"))
+    beyond2 = noise_v(stage, "residual", {}) ** 2 - (own_v**2 + circuit.thermal_v2(source_ohm)) * lowest**2
+    leave(
+        circuit, stage, circuit.hiss(node, sqrt(max(beyond2, 0.0))), amount(stage, "z_out_ohm", "impedance")
+    )
+
+
+def device_ein(circuit: Circuit, text: str) -> tuple[float, float]:
+    """A device's own input noise, EIN without the thermal part of the source it was measured with; and that source."""
+    parsed = parse(text, "ein")
     total = parsed.amount / (times(A_ON_WHITE_DB) if parsed.weighting == "A" else 1.0)
-    from_source = 4.0 * BOLTZMANN_J_PER_K * circuit.temperature_k * parsed.at.get("source_ohm", 0.0) * BAND_HZ
-    return sqrt(max(total**2 - from_source, 0.0))
+    source_ohm = parsed.at["source_ohm"]
+    return sqrt(total**2 - circuit.thermal_v2(source_ohm)), source_ohm
+
+
+@writes("mixer_channel")
+def mixer_channel(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """Trim, noise of the strip, fader; its filters flat."""
+    node = enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))
+    node = circuit.amplify(node, times(setting(stage, "trim_db")))
+    references = {"nominal": amount(stage, "nominal_v", "voltage"), "max": amount(stage, "max_v", "voltage")}
+    node = circuit.hiss(node, noise_v(stage, "noise", references))
+    node = circuit.amplify(node, times(setting(stage, "fader_db")))
+    leave(circuit, stage, node, amount(stage, "z_out_ohm", "impedance"))
+
+
+@writes("mix_bus")
+def mix_bus(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """Sum, noise of the summing amplifier, bus fader, residual noise."""
+    node = enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))
+    references = {
+        "nominal": amount(stage, "nominal_v", "voltage"),
+        "max": amount(stage, "max_output_v", "voltage"),
+    }
+    node = circuit.amplify(
+        circuit.hiss(node, noise_v(stage, "summing_noise", references)), times(setting(stage, "fader_db"))
+    )
+    node = circuit.hiss(node, noise_v(stage, "residual", references))
+    leave(circuit, stage, node, amount(stage, "z_out_ohm", "impedance"))
+
+
+@writes("power_amplifier")
+def power_amplifier(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """Attenuator, gain at the terminals into the rated load, noise behind the attenuator, output impedance by damping."""
+    node = enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))
+    rating = parse(stage["rated_power_w"][0]["text"], "power_at_load")
+    load = rating.at["load_ohm"]
+    z_out = load / amount(stage, "damping_factor", "damping_factor")
+    open_circuit = (load + z_out) / load
+    node = circuit.amplify(
+        node, times(setting(stage, "attenuator_db") + amount(stage, "gain_db", "gain")) * open_circuit
+    )
+    rated_v = sqrt(rating.amount * load)
+    node = circuit.hiss(node, noise_v(stage, "noise", {"rated": rated_v, "1 W": sqrt(load)}) * open_circuit)
+    leave(circuit, stage, node, z_out)
+
+
+@writes("feed")
+def feed(circuit: Circuit, stage: Stage, ports: Ports) -> None:
+    """It ends here: only its load is felt."""
+    enter(circuit, stage, ports, amount(stage, "z_in_ohm", "impedance"))

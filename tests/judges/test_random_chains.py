@@ -10,14 +10,21 @@ import pytest
 from engine.figures import Figure
 from engine.outcome import evaluate
 from engine.project import Project
-from engine.stages import Setting, Stage, template
+from engine.stages import KINDS as SHELF
+from engine.stages import Setting, Stage
 from engine.units import dbu_from_v
-from tests.engine.plain_kinds import PlainSplitter, amplifier, project, source
+from tests.engine.plain_kinds import PlainAmplifier, PlainSource, PlainSplitter, project
 from tests.judges.netlist import write
 from tests.judges.ngspice import measure
 
 FREQUENCIES_HZ = (20.0, 1000.0, 20_000.0)
-DRAWS = 36
+DRAWS = 48
+
+KINDS: dict[str, type[Stage]] = {
+    **SHELF, "plain_source": PlainSource, "plain_amplifier": PlainAmplifier, "plain_splitter": PlainSplitter,
+}  # fmt: skip
+FIGURES = {name: kind.figure_specs() for name, kind in KINDS.items()}
+CONTROLS = {name: kind.control_specs() for name, kind in KINDS.items()}
 
 
 class Draw:
@@ -28,6 +35,7 @@ class Draw:
         self.stages: list[Stage] = []
         self.ends: list[tuple[str, str]] = []
         self.open: list[str] = []  # outputs that feed nothing yet
+        self.ahead: dict[str, set[str]] = {}  # the stages ahead of each
         self.column = 0
 
     def project(self) -> Project:
@@ -37,79 +45,134 @@ class Draw:
             self.column += 1
             self._add_stage()
         self.column += 1
-        for end in list(self.open):  # every open output drives an input at last
+        for end in list(self.open):  # most open outputs drive an input at last
             if self.random.random() < 0.8:
-                self._amplify([end])
+                self._put("feed", [end], z_in_ohm=self._ohm(500.0, 50_000.0))
         return project(self.stages, *self.ends)
 
-    def _name(self, sort: str) -> str:
-        return f"{sort}{len(self.stages)}"
-
-    def _ohm(self, low: float, high: float) -> str:
-        return f"{np.exp(self.random.uniform(np.log(low), np.log(high))):.3f} ohm"
-
-    def _put(self, stage: Stage, fed_by: list[str], *outs: str) -> None:
-        self.stages.append(stage)
+    # -- stages ------------------------------------------------------------------------------------------------
+    def _put(self, kind: str, fed_by: list[str], *outs: str, **fields: object) -> None:
+        name = f"{kind}{len(self.stages)}"
+        texts = {
+            key: Figure(text=value) if isinstance(value, str) and key in FIGURES[kind] else value
+            for key, value in fields.items()
+        }
+        settings = {
+            key: Setting(value=value) if key in CONTROLS[kind] else value for key, value in texts.items()
+        }
+        self.stages.append(
+            KINDS[kind].model_validate({"id": name, "name": name, "column": self.column, **settings})
+        )
+        self.ahead[name] = {name}.union(*(self.ahead[end.partition(".")[0]] for end in fed_by))
         for end in fed_by:
-            self.ends.append((end, stage.id))
+            self.ends.append((end, name))
             self.open.remove(end)
-        self.open.extend(f"{stage.id}.{port}" if port != "out" else stage.id for port in outs)
+        self.open.extend(name if port == "out" else f"{name}.{port}" for port in outs)
 
     def _add_source(self) -> None:
-        level = f"{np.exp(self.random.uniform(np.log(1e-3), np.log(1.0))) * 1e3:.6f} mV"
-        name = self._name("source")
+        level = f"{self._between(1.0, 1000.0):.6f} mV"
         if self.random.random() < 0.5:
-            self._put(source(name, emf=level, z=self._ohm(20.0, 2000.0)), [], "out")
+            self._put("plain_source", [], "out", emf_v=level, z_ohm=self._ohm(20.0, 2000.0))
             return
-        noise = self.random.choice([None, Figure(text="90 dB(A) re max"), Figure(text="80 dB re nominal unweighted")])
-        drawn = template(
-            "line_source", name, nominal_v=Figure(text=level), max_output_v=Figure(text="5 V"), noise=noise,
-            z_out_ohm=Figure(text=self._ohm(20.0, 2000.0)), level_switch=Setting(value=self.random.choice([0.0, 1.0])),
+        noise = self.random.choice([None, "90 dB(A) re max", "80 dB re nominal unweighted"])
+        self._put(
+            "line_source", [], "out", nominal_v=level, max_output_v="5 V", noise=noise, z_out_ohm=self._ohm(20.0, 2000.0),
+            level_switch=self.random.choice([0.0, 1.0]),
         )  # fmt: skip
-        self._put(drawn, [], "out")
 
     def _add_stage(self) -> None:
         end = self.random.choice(self.open)
-        sort = self.random.choice(["pad", "split", "amplify", "mix", "branch"])
-        name = self._name(sort)
+        sort = self.random.choice(
+            ["pad", "line_cable", "split", "amplify", "amplify", "mix", "combine", "branch"]
+        )
         if sort == "pad":
-            pad = template(
-                "pad", name, column=self.column, loss_db=Figure(text=f"{self.random.uniform(1.0, 40.0):.2f} dB"),
-                z_ohm=Figure(text=self._ohm(100.0, 10_000.0)), shape=self.random.choice(["U", "H"]),
-                inserted=Setting(value=self.random.choice([1.0, 1.0, 0.0])),
+            self._put(
+                "pad", [end], "out", loss_db=f"{self.random.uniform(1.0, 40.0):.2f} dB", z_ohm=self._ohm(100.0, 10_000.0),
+                shape=self.random.choice(["U", "H"]), inserted=self.random.choice([1.0, 1.0, 0.0]),
             )  # fmt: skip
-            self._put(pad, [end], "out")
-        elif sort == "cable":
-            self._put(self._cable(name), [end], "out")
+        elif sort == "line_cable":
+            way = self.random.choice(["loop", "one-way"])
+            self._put(
+                "line_cable", [end], "out", length_m=f"{self.random.uniform(1.0, 150.0):.1f} m",
+                resistance_ohm_per_m=f"{self.random.uniform(50.0, 200.0):.1f} ohm/km {way}",
+            )  # fmt: skip
         elif sort == "split":
-            splitter = PlainSplitter(
-                id=name, name=name, column=self.column, leg_ohm=Figure(text=self._ohm(10.0, 1000.0)),
-                across_ohm=Figure(text=self._ohm(1000.0, 100_000.0)),
-            )  # fmt: skip
-            self._put(splitter, [end], "a", "b")
-        elif sort == "mix":
-            self._amplify(self.random.sample(self.open, min(len(self.open), self.random.randint(1, 3))))
+            self._split(end)
+        elif sort in ("mix", "combine"):
+            chosen = self._some_that_may_meet(again=sort == "mix")
+            if sort == "combine":
+                self._put("combiner", chosen, "out", leg_ohm=self._ohm(100.0, 10_000.0))
+            else:
+                self._put(
+                    "mix_bus", chosen, "out", z_in_ohm=self._ohm(500.0, 50_000.0), z_out_ohm=self._ohm(10.0, 1000.0),
+                    fader_db=self._step(-30.0, 10.0), residual="-86 dBu unweighted", summing_noise="-90 dBu(A)",
+                )  # fmt: skip
         else:
-            self._amplify([end])
+            self._amplify(end)
             if sort == "branch":  # the same output feeds a second input
                 self.open.append(end)
-                self._amplify([end])
+                self._amplify(end)
 
-    def _cable(self, name: str) -> Stage:
-        return template(
-            "line_cable",
-            name,
-            column=self.column,
-            length_m=Figure(text=f"{self.random.uniform(1.0, 300.0):.1f} m"),
+    def _split(self, end: str) -> None:
+        build = self.random.choice(["plain", "parallel", "resistive", "transformer"])
+        if build == "plain":
+            across = self._ohm(1000.0, 100_000.0)
+            self._put("plain_splitter", [end], "a", "b", leg_ohm=self._ohm(10.0, 1000.0), across_ohm=across)
+            return
+        ways = self.random.randint(2, 4)
+        outs = ["out", *(f"out_{n}" for n in range(2, ways + 1))]
+        loss = f"{self.random.uniform(0.0, 6.0):.2f} dB"
+        self._put(
+            "splitter", [end], *outs, build=build, ways=ways, leg_ohm=self._ohm(10.0, 1000.0), loss_db=loss
         )
 
-    def _amplify(self, fed_by: list[str]) -> None:
-        drawn = amplifier(
-            self._name("amplifier"), self.column, round(self.random.uniform(-20.0, 40.0), 1),
-            noise=f"{self.random.uniform(0.2, 20.0):.3f} uV", z_in=self._ohm(500.0, 50_000.0),
-            z_out=self._ohm(10.0, 1000.0),
-        )  # fmt: skip
-        self._put(drawn, fed_by, "out")
+    def _amplify(self, end: str) -> None:
+        ends = {"z_in_ohm": self._ohm(500.0, 50_000.0), "z_out_ohm": self._ohm(10.0, 1000.0)}
+        kind = self.random.choice(["plain_amplifier", "preamplifier", "mixer_channel", "power_amplifier"])
+        if kind == "plain_amplifier":
+            hiss = f"{self.random.uniform(0.2, 20.0):.3f} uV"
+            self._put(kind, [end], "out", **ends, gain_db=self._step(-20.0, 40.0), noise_v=hiss)
+        elif kind == "preamplifier":
+            ein = (Figure(text=f"{self.random.uniform(-129.0, -115.0):.2f} dBu @ 150 ohm unweighted"),)
+            self._put(
+                kind, [end], "out", **ends, gain_db=self._step(0.0, 60.0), ein_v=ein, residual="-95 dBu(A)",
+                pad=self.random.choice([0.0, 1.0]),
+            )  # fmt: skip
+        elif kind == "mixer_channel":
+            faders = {"trim_db": self._step(-20.0, 20.0), "fader_db": self._step(-40.0, 10.0)}
+            self._put(kind, [end], "out", **ends, **faders, noise="98 dB re nominal unweighted")
+        else:
+            del ends["z_out_ohm"]
+            self._put(
+                kind, [end], "out", **ends, attenuator_db=self._step(-20.0, 0.0), gain_db="32 dB", noise="105 dB(A) re rated",
+                damping_factor=f"{self.random.uniform(5.0, 500.0):.1f}",
+            )  # fmt: skip
+
+    # -- numbers ----------------------------------------------------------------------------------------------
+    def _between(self, low: float, high: float) -> float:
+        return float(np.exp(self.random.uniform(np.log(low), np.log(high))))
+
+    def _ohm(self, low: float, high: float) -> str:
+        return f"{self._between(low, high):.3f} ohm"
+
+    def _step(self, low: float, high: float) -> float:
+        return round(self.random.uniform(low, high), 1)
+
+    def _some_that_may_meet(self, *, again: bool) -> list[str]:
+        """One to three open outputs. `again`: they may have something ahead of them in common, if it is no cable.
+
+        A sum adds magnitudes, not phases; and what meets again in a passive stage would be a ring.
+        """
+        found: list[str] = []
+        met: set[str] = set()
+        for end in self.random.sample(self.open, min(len(self.open), self.random.randint(1, 3))):
+            ahead = self.ahead[end.partition(".")[0]]
+            if not met & ahead or (
+                again and not any(stage.startswith("line_cable") for stage in met | ahead)
+            ):
+                found.append(end)
+                met |= ahead
+        return found
 
 
 @pytest.mark.parametrize("seed", range(DRAWS))
