@@ -11,7 +11,7 @@ from PySide6.QtCore import QObject, Signal
 USUAL_PITCH_PX = 112.0
 LEAST_PITCH_PX = 6.0
 MOST_PITCH_PX = 320.0
-BLOCK_SHARE = 0.86  # of the pitch; the rest is the gap
+BLOCK_SHARE = 0.84  # of the pitch; the rest is the gap
 TEXT_PITCH_PX = 40.0  # narrower blocks draw no text
 
 
