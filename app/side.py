@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QSize, Qt
+from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QSplitter, QVBoxLayout, QWidget
 
 from .card import StageCard
@@ -11,7 +12,7 @@ from .findings_list import FindingsList
 from .inks import Inks
 
 WIDTH_PX = 300
-CHART_PX, FINDINGS_PX = 180, 190
+CHART_SHARE, FINDINGS_SHARE = 0.2, 0.24  # of the height; the card has the rest
 
 
 class Side(QWidget):
@@ -23,6 +24,7 @@ class Side(QWidget):
         self.card = StageCard(document, inks)
         self.findings = FindingsList(document, inks)
         self.chart: QWidget | None = None
+        self.shared_out = False  # a hand has set how the height is shared
         self.splitter = QSplitter(Qt.Orientation.Vertical)
         self.splitter.setHandleWidth(1)
         self.splitter.setChildrenCollapsible(False)
@@ -33,6 +35,7 @@ class Side(QWidget):
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.addWidget(self.splitter)
+        self.splitter.splitterMoved.connect(self._shared_by_hand)
         self.setMinimumWidth(240)
 
     def sizeHint(self) -> QSize:
@@ -47,8 +50,24 @@ class Side(QWidget):
         self.chart = BandChart(self._document, self._inks)
         self.splitter.insertWidget(1, self.chart)
         self.splitter.setStretchFactor(1, 0)
-        room = self.splitter.height() - CHART_PX - FINDINGS_PX
-        self.splitter.setSizes([room, CHART_PX, FINDINGS_PX])
+        self.chart.show()
+        self.share_out()
+
+    def share_out(self) -> None:
+        """Give card, chart and findings their shares of the height; not where a hand has set them."""
+        if self.shared_out:
+            return
+        whole = self.splitter.height()
+        chart, findings = round(CHART_SHARE * whole), round(FINDINGS_SHARE * whole)
+        parts = [findings] if self.chart is None else [chart, findings]
+        self.splitter.setSizes([whole - sum(parts), *parts])
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self.share_out()
+
+    def _shared_by_hand(self) -> None:
+        self.shared_out = True
 
     def set_inks(self, inks: Inks) -> None:
         """Show in other colours."""
