@@ -110,8 +110,8 @@ class Centre(QWidget):
         self.columns.set_extent(
             max((stage.column for stage in stages), default=-1) + 1, float(self.path.width())
         )
-        self._moving = was
         self._columns_changed()
+        self._moving = was
 
     def _columns_changed(self) -> None:
         moved, self._moving = self._moving, True

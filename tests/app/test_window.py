@@ -386,6 +386,22 @@ def test_path_and_diagram_share_columns_scroll_and_zoom(window, qtbot):
     assert centre.path.width() == centre.diagram.width()
 
 
+def test_the_whole_path_stays_in_view_until_a_hand_zooms(window, qtbot):
+    window.document.load(
+        Project(stages=tuple(template("pad", f"pad-{n}", column=n) for n in range(14))), None
+    )
+    centre = window.centre
+    centre.fit()
+    for width in (1900, 1100, 1500):
+        window.resize(width, 800)
+        qtbot.waitUntil(lambda: abs(centre.columns.x_out(13) + 100 - centre.path.width()) < 40)
+    centre.zoom(1.3)
+    pitch = centre.columns.pitch_px
+    window.resize(1300, 800)
+    QApplication.processEvents()
+    assert centre.columns.pitch_px == pitch
+
+
 @pytest.mark.parametrize("scheme", list(SCHEMES))
 def test_every_scheme_dresses_the_whole_window(window, scheme):
     window.actions_[f"scheme {scheme}"].trigger()
