@@ -70,5 +70,5 @@ CONVENTION_LINE = (
     "0\u202fdBu\u202f=\u202f0.7746\u202fV rms · 0\u202fdBV\u202f=\u202f1\u202fV · 0\u202fdBFS: rms of a full-scale sine · "
     "94\u202fdB SPL\u202f=\u202f1\u202fPa · level: rms of the programme · "
     f"clip: rms of the largest clean sine · peak: level + crest {MINUS} 3.01\u202fdB · headroom: clip {MINUS} level · peak margin: "
-    f"clip {MINUS} peak · noise: 20\u202fHz to 20\u202fkHz, unweighted or (A)"
+    f"clip {MINUS} peak · noise: 20\u202fHz to 20\u202fkHz, flat or (A)"
 )

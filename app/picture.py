@@ -22,6 +22,7 @@ from engine.sections.base import Domain
 from engine.stages import Stage
 
 LEFT_PX, RIGHT_PX = 50.0, 76.0  # room for the axes
+END_PX = 16.0  # beyond the last stage, for what stands beside a seat
 BLOCK_SHARE = 0.84
 LEADING_PX = 13.0
 KEY_PX = 26.0  # height of the line that says what the lines mean
@@ -42,7 +43,7 @@ class PathColumns:
 
     @property
     def pitch(self) -> float:
-        return (self.width - LEFT_PX - RIGHT_PX) / max(self.count, 1)
+        return (self.width - LEFT_PX - RIGHT_PX - END_PX) / max(self.count, 1)
 
     def x_in(self, column: float) -> float:
         return LEFT_PX + (column + (1.0 - BLOCK_SHARE) / 2.0) * self.pitch
