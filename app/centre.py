@@ -12,6 +12,7 @@ from .document import Document
 from .inks import Inks
 from .path_view import PathView
 
+LEAST_GROWN_PX = 64.0  # narrower, a block's name no longer reads well
 PATH_SHARE = 0.4  # of the height, at most, where no hand has set it
 
 
@@ -45,7 +46,7 @@ class Centre(QWidget):
         column.addWidget(self.bar)
         self.bar.valueChanged.connect(columns.scroll_to)
         columns.changed.connect(self._columns_changed)
-        document.changed.connect(self._measure)
+        document.changed.connect(self._project_changed)
         self.splitter.splitterMoved.connect(self._shared_by_hand)
         self.diagram.path_changed.connect(self.path.show_path)
         self.path.installEventFilter(self)
@@ -104,7 +105,14 @@ class Centre(QWidget):
     def _shared_by_hand(self) -> None:
         self.shared_out = True
 
-    def _measure(self, _changes: object = None) -> None:
+    def _project_changed(self, _changes: object) -> None:
+        """A path that grows stays in view, as long as its blocks stay readable."""
+        before = self.columns.count
+        self._measure()
+        if self._fitted and self.columns.count > before and self.columns.fitted_pitch_px >= LEAST_GROWN_PX:
+            self.fit()
+
+    def _measure(self) -> None:
         was, self._moving = self._moving, True
         stages = self._document.project.stages
         self.columns.set_extent(

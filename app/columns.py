@@ -94,10 +94,18 @@ class Columns(QObject):
     def fit(self, first: int = 0, last: int | None = None) -> None:
         """Show columns `first` to `last` (all of them), not wider than the usual pitch."""
         last = max(first, self._count - 1) if last is None else last
-        room = self._view_px - self.left_px - self.right_px
-        pitch = min(USUAL_PITCH_PX, max(LEAST_PITCH_PX, room / (last - first + 1)))
+        pitch = self._fitting(last - first + 1)
         if self._move(pitch, first * pitch):
             self.changed.emit()
+
+    @property
+    def fitted_pitch_px(self) -> float:
+        """The pitch at which all columns are in view."""
+        return self._fitting(max(1, self._count))
+
+    def _fitting(self, columns: int) -> float:
+        room = self._view_px - self.left_px - self.right_px
+        return min(USUAL_PITCH_PX, max(LEAST_PITCH_PX, room / columns))
 
     def reveal(self, column: int) -> None:
         """Scroll no further than needed to show a column."""

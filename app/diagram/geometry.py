@@ -17,7 +17,7 @@ from .traces import SERIES, ColumnMap, Place, places, spans
 
 View = Literal["levels", "to clip"]
 LABEL_PX = 13.0  # height of a label's line
-TOP_PX, BOTTOM_PX = 14.0, 12.0
+TOP_PX, BOTTOM_PX = 24.0, 12.0  # the axes are named above the first tick
 SEAT_BAR_PX = 30.0
 
 Span = tuple[float, float, float, float]

@@ -83,7 +83,7 @@ def paint_moving(painter: QPainter, geometry: Geometry, inks: Inks) -> None:
         return
     painter.save()
     plot = geometry.plot
-    painter.setClipRect(QRectF(0.0, plot.top - 4.0, 1e6, plot.bottom - plot.top + 8.0))
+    painter.setClipRect(QRectF(plot.left - 4.0, plot.top - 4.0, 1e6, plot.bottom - plot.top + 8.0))
     guide = QPen(inks.hairline, 1.0)
     guide.setDashPattern([1.0, 4.0])
     painter.setPen(guide)
