@@ -11,7 +11,7 @@ from engine.sections.base import Active, ActiveStage, Domain, PassiveStage, Stag
 from engine.sections.net import Node
 
 from .draft import SILENCE, Draft
-from .wire import NetShape, alike_into_one, find_nets, in_node, out_node
+from .wire import NetShape, PassiveLoopError, alike_into_one, find_nets, in_node, is_electrical, out_node
 
 
 @dataclass(frozen=True)
@@ -75,23 +75,59 @@ def lay_out(project: Project, answers: Mapping[str, StageSections]) -> Layout:
     for shape in shapes:
         if not shape.drivers:
             _add_net(layout, shape)
-    for key in project.topology.order:
-        answer = answers[key]
-        if isinstance(answer, PassiveStage):
-            continue
-        _add_active(layout, project, key, answer, groups, same)
-        for port, output in answer.outputs.items():
-            row = _row_of(layout, answer, key, output.section)
-            layout.output_rows[key, port] = row
-            layout.open_rows[key, port] = row
-            if (driven := net_of_driver.get((key, port))) is not None:
-                waiting[id(driven)] -= 1
-                if not waiting[id(driven)]:
-                    _add_net(layout, driven)
+    left = [key for key in project.topology.order if isinstance(answers[key], ActiveStage)]
+    while left:
+        later = []
+        for key in left:
+            # A net with several drivers stands only when the last of them does.
+            if not _can_hear(layout, project, key, same):
+                later.append(key)
+                continue
+            answer = answers[key]
+            assert isinstance(answer, ActiveStage)
+            _add_active(layout, project, key, answer, groups, same)
+            for port, output in answer.outputs.items():
+                row = _row_of(layout, answer, key, output.section)
+                layout.output_rows[key, port] = row
+                layout.open_rows[key, port] = row
+                if (driven := net_of_driver.get((key, port))) is not None:
+                    waiting[id(driven)] -= 1
+                    if not waiting[id(driven)]:
+                        _add_net(layout, driven)
+        if len(later) == len(left):
+            raise _feedback(project, left, shapes)
+        left = later
     _name_net_nodes(layout, project, answers, same)
     layout.draft.find_shared()
     _give_pairs(layout)
     return layout
+
+
+def _can_hear(layout: Layout, project: Project, key: str, same: Mapping[Node, Node]) -> bool:
+    """Whether the rows of all that leads into a stage have been laid out."""
+    for link in project.topology.into[key]:
+        if is_electrical(project, link):
+            node = in_node(project, link)
+            if same.get(node, node) not in layout.node_rows:
+                return False
+        elif (link.source, link.output) not in layout.output_rows:
+            return False
+    return True
+
+
+def _feedback(project: Project, left: list[str], shapes: list[NetShape]) -> PassiveLoopError:
+    """Why stages are left that can never hear: an output leads back to its own input through passive stages."""
+    stuck = set(left)
+    for shape in shapes:
+        drivers = [stage for stage, _, _ in shape.drivers if stage in stuck]
+        fed = [stage for stage, _, _ in shape.loads if stage in stuck]
+        if drivers and fed:
+            one, other = project.stage[fed[0]].name, project.stage[drivers[0]].name
+            return PassiveLoopError(
+                f"What {other} sends comes back to {one} through passive stages that both hang on: "
+                "put an active stage between them"
+            )
+    return PassiveLoopError(f"{project.stage[left[0]].name} can never hear what leads to it")
 
 
 def _give_pairs(layout: Layout) -> None:

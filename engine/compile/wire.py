@@ -26,7 +26,7 @@ ONE_LEG = {
 
 
 class PassiveLoopError(LinkError):
-    """Passive sections linked in a ring."""
+    """Passive sections linked in a ring, or leading a stage's output back to its own input."""
 
 
 @dataclass(frozen=True)
@@ -92,7 +92,7 @@ def find_nets(
     Raises `PassiveLoopError` for a ring of passive sections.
     """
     same: dict[Node, Node] = {}
-    electrical = [link for link in project.links if _is_electrical(project, link)]
+    electrical = [link for link in project.links if is_electrical(project, link)]
     edges: list[tuple[Node, Node, str, str, int, bool, float]] = []
     clip_scale: dict[Node, float] = {}
     group: dict[Node, str | None] = {}
@@ -150,7 +150,8 @@ def alike_into_one(project: Project, link: Link, groups: Mapping[str, str | None
     return project.stage[link.source].count if leaves else 1
 
 
-def _is_electrical(project: Project, link: Link) -> bool:
+def is_electrical(project: Project, link: Link) -> bool:
+    """Whether a link carries volts."""
     return any(
         p.name == link.output and p.domain is Domain.ANALOGUE for p in project.stage[link.source].outputs()
     )
