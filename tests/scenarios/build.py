@@ -34,6 +34,8 @@ def stage(kind: str, id: str, **fields: Any) -> Stage:
     maker = KINDS[kind]
     given: dict[str, Any] = {}
     for name, value in fields.items():
+        if name not in maker.model_fields:
+            raise TypeError(f"{kind} has no {name}")
         if name in maker.control_specs():
             given[name] = Setting(value=None if value is None else float(value))
         elif name in maker.figure_specs() and isinstance(value, str):
