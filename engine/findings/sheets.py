@@ -16,19 +16,19 @@ TOGETHER = 3  # stages whose guesses are told one by one
 @finder
 def figures_still_guesses(outcome: Outcome) -> Iterator[Finding]:
     """Figures that nobody has taken from a sheet or measured, told together where many stages have them."""
-    guessed = {
-        stage: [spec.label for _, spec, given in stage.figures() if given.origin == "guess"]
+    guessed = [
+        (stage, labels)
         for stage in outcome.project.stages
-    }
-    guessed = {stage: labels for stage, labels in guessed.items() if labels}
+        if (labels := [spec.label for _, spec, given in stage.figures() if given.origin == "guess"])
+    ]
     mend = "Type them from the data sheet or measure them, and mark where they came from."
     if len(guessed) > TOGETHER:
-        total = sum(map(len, guessed.values()))
-        most = max(guessed, key=lambda stage: len(guessed[stage]))
-        message = f"{total} figures of {len(guessed)} stages are still guesses, most of them ({len(guessed[most])}) at {most.name}."
+        total = sum(len(labels) for _, labels in guessed)
+        most, its = max(guessed, key=lambda each: len(each[1]))
+        message = f"{total} figures of {len(guessed)} stages are still guesses, most of them ({len(its)}) at {most.name}."
         yield Finding("note", "still-a-guess", most.id, message, mend)
         return
-    for stage, labels in guessed.items():
+    for stage, labels in guessed:
         number = (
             "1 figure is still a guess" if len(labels) == 1 else f"{len(labels)} figures are still guesses"
         )
