@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from functools import cache
 from typing import Any
 
@@ -18,14 +19,16 @@ def plain(model: BaseModel) -> dict[str, Any]:
     """
     content: dict[str, Any] = {}
     values = model.__dict__
-    for name, may_go_unsaid in _fields(type(model)):
+    for name, usual in _fields(type(model)):
         value = values[name]
-        if value is None and may_go_unsaid:
+        if not value and value == usual and (value is None or isinstance(value, Mapping)):
             continue
         if isinstance(value, BaseModel):
             content[name] = plain(value)
         elif isinstance(value, tuple):
             content[name] = [plain(each) if isinstance(each, BaseModel) else each for each in value]
+        elif isinstance(value, Mapping):
+            content[name] = dict(sorted(value.items()))
         else:
             content[name] = value
     if model.__pydantic_extra__:
@@ -34,6 +37,9 @@ def plain(model: BaseModel) -> dict[str, Any]:
 
 
 @cache
-def _fields(kind: type[BaseModel]) -> tuple[tuple[str, bool], ...]:
-    """Each field's name, and whether an empty one is read as empty when it is left out."""
-    return tuple((name, declared.default is None) for name, declared in kind.model_fields.items())
+def _fields(kind: type[BaseModel]) -> tuple[tuple[str, Any], ...]:
+    """Each field's name and its default."""
+    return tuple(
+        (name, declared.get_default(call_default_factory=True))
+        for name, declared in kind.model_fields.items()
+    )
