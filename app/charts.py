@@ -1,123 +1,243 @@
-"""The live chart by one-third-octave band, at the selected stage's output or at a seat. Imported after the first frame."""
+"""The chart by one-third-octave band of what is selected: level, noise, and at a seat the room's own noise.
+
+Loads pyqtgraph: import it after the first frame.
+"""
 
 from __future__ import annotations
 
-import math
-
-import numpy as np
 import pyqtgraph as pg
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QLabel, QVBoxLayout, QWidget
+from PySide6.QtCore import QEvent, QPointF, QSize, Qt
+from PySide6.QtGui import (
+    QColor,
+    QFocusEvent,
+    QFontMetrics,
+    QKeyEvent,
+    QMouseEvent,
+    QPainter,
+    QPaintEvent,
+    QPen,
+)
+from PySide6.QtWidgets import QVBoxLayout, QWidget
 
-from app.document import Document
-from app.inks import Inks, font
-from engine.bands import BAND_MID_HZ
-from engine.levels import UNIT, BandLevels
-from engine.outcome import Outcome
-from engine.sections.base import Domain
+from . import words
+from .band_data import BANDS_HZ, BandData, band_data
+from .card.pieces import Elided
+from .document import Document
+from .inks import Inks, font
+from .style import PADDING_PX
 
-TICKS_HZ = (31.5, 125, 500, 2000, 8000)
-SPAN_DB = 20.0
+TICKS = {5: "63", 11: "250", 17: "1 k", 23: "4 k", 29: "16 k"}
+AXIS_PX = 36
+LINES = (("level", Qt.PenStyle.SolidLine), ("noise", Qt.PenStyle.DotLine), ("room", Qt.PenStyle.DashLine))
 
 
 class BandChart(QWidget):
-    """Level, noise and the room's own curve over frequency. Items are made once; ranges keep still while a hand moves."""
+    """Follows a document's selection and outcome; hover or arrow keys read a band."""
 
     def __init__(self, document: Document, inks: Inks, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.document, self.inks = document, inks
-        self.title = QLabel()
-        self.title.setFont(font(11))
-        self.title.setProperty("quiet", True)
-        self.plot = pg.PlotWidget()
-        self.plot.setMenuEnabled(False)
-        self.plot.setMouseEnabled(x=False, y=False)
-        self.plot.hideButtons()
-        self.plot.setAccessibleName("Level and noise by band")
-        self.plot.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self.level = self.plot.plot()
-        self.noise = self.plot.plot()
-        self.room = self.plot.plot()
-        self._x = np.log10(BAND_MID_HZ)
-        self.plot.setXRange(self._x[0], self._x[-1], padding=0.02)
-        self.plot.getAxis("bottom").setTicks(
-            [[(math.log10(hz), f"{hz / 1000:g}k" if hz >= 1000 else f"{hz:g}") for hz in TICKS_HZ]]
-        )
-        column = QVBoxLayout(self)
-        column.setContentsMargins(20, 8, 12, 4)
-        column.setSpacing(2)
-        column.addWidget(self.title)
-        column.addWidget(self.plot, 1)
+        self._document, self._inks = document, inks
+        self.data: BandData | None = None
+        self.band: int | None = None
+        self._ends: tuple[float, float] = (0.0, 0.0)
+        self.title = Elided("", 12, strong=True)
+        self.reading = Elided("", 11, quiet=True)
+        self.key = Key(inks)
+        self.plot = pg.PlotWidget(enableMenu=False)
+        self._build()
+        self.reading.hide()
+        head = QVBoxLayout()
+        head.setContentsMargins(PADDING_PX, 6, PADDING_PX, 0)
+        head.setSpacing(2)
+        for part in (self.title, self.key, self.reading):
+            head.addWidget(part)
+        body = QVBoxLayout(self)
+        body.setContentsMargins(0, 0, 0, 0)
+        body.setSpacing(0)
+        body.addLayout(head)
+        body.addWidget(self.plot, 1)
+        self.setMinimumHeight(120)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setAccessibleName("By one-third-octave band")
+        document.solved.connect(self._solved)
+        document.selection_changed.connect(self._selected)
         self.set_inks(inks)
-        document.solved.connect(self.refresh)
-        document.selection_changed.connect(lambda _: self.refresh(document.outcome))
-        self.refresh(document.outcome)
+        self._show(may_scale=True)
+
+    def sizeHint(self) -> QSize:
+        return QSize(300, 180)
+
+    def _build(self) -> None:
+        plot = self.plot
+        plot.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        plot.setMouseEnabled(x=False, y=False)
+        plot.hideButtons()
+        plot.setFrameShape(pg.QtWidgets.QFrame.Shape.NoFrame)
+        plot.getViewBox().disableAutoRange()
+        plot.setXRange(-0.5, len(BANDS_HZ) - 0.5, padding=0)
+        bottom, left = plot.getAxis("bottom"), plot.getAxis("left")
+        bottom.setTicks([list(TICKS.items())])
+        bottom.setHeight(20)
+        left.setWidth(AXIS_PX)
+        for axis in (bottom, left):
+            axis.setStyle(tickLength=0, tickFont=font(11), hideOverlappingLabels=False)
+        plot.setContentsMargins(0, 0, 0, 0)
+        plot.getPlotItem().layout.setContentsMargins(8, 4, PADDING_PX - 6, 4)
+        self.lines = {name: pg.PlotCurveItem(connect="finite", antialias=True) for name, _ in LINES}
+        self.rules = pg.PlotCurveItem(connect="pairs")
+        self.mark = pg.PlotCurveItem()
+        for item in (self.rules, self.mark, *self.lines.values()):
+            plot.addItem(item, ignoreBounds=True)
+        plot.viewport().setMouseTracking(True)
+        plot.viewport().installEventFilter(self)
 
     def set_inks(self, inks: Inks) -> None:
-        """Show in other colours; lines stay told apart by weight and dash."""
-        self.inks = inks
+        """Show in other colours."""
+        self._inks = inks
+        self.key.set_inks(inks)
         self.plot.setBackground(inks.paper)
-        for name in ("left", "bottom"):
-            axis = self.plot.getAxis(name)
-            axis.setPen(pg.mkPen(inks.hairline))
-            axis.setTextPen(pg.mkPen(inks.muted))
-            axis.setStyle(tickFont=font(11), tickLength=-4)
-        self.plot.getAxis("left").setWidth(34)
-        self.plot.getAxis("bottom").setHeight(20)
-        self.level.setPen(pg.mkPen(inks.level, width=1))
-        self.noise.setPen(pg.mkPen(inks.noise, width=1, style=Qt.PenStyle.DotLine))
-        self.room.setPen(pg.mkPen(inks.muted, width=1, style=Qt.PenStyle.DashLine))
+        for name, dash in LINES:
+            pen = QPen(_ink(inks, name), 1.6 if name == "level" else 1.2, dash)
+            pen.setCosmetic(True)
+            self.lines[name].setPen(pen)
+        self.rules.setPen(pg.mkPen(inks.hairline, width=1))
+        self.mark.setPen(pg.mkPen(inks.accent, width=1))
+        for axis in ("bottom", "left"):
+            self.plot.getAxis(axis).setPen(pg.mkPen(inks.paper))
+            self.plot.getAxis(axis).setTextPen(pg.mkPen(inks.muted))
 
-    def refresh(self, outcome: Outcome) -> None:
-        """Show the selected stage's bands, or the first seat's."""
-        shown = self._choose(outcome)
-        if shown is None:
-            self.title.setText("By band: nothing to show yet")
-            for item in (self.level, self.noise, self.room):
-                item.setData([], [])
+    # -- following -------------------------------------------------------------------------------------------
+    def _solved(self, _outcome: object) -> None:
+        self._show(may_scale=not self._document.gesture_open)
+
+    def _selected(self, _selection: object) -> None:
+        self._show(may_scale=True)
+
+    def _show(self, *, may_scale: bool) -> None:
+        if not self._document.outcome.project.same_as(self._document.project):
+            may_scale = may_scale and self.data is None
+        self.data = band_data(self._document.outcome, self._document.selection)
+        if self.data is None:
+            self.title.show_text("By band")
+            self.key.show_names(())
+            for line in self.lines.values():
+                line.setData([], [])
+            self._read(None)
             return
-        stage, direction = shown
-        node = outcome.node(stage, direction)
-        bands = outcome.band_levels(node)
-        side = {"in": "input", "out": "output"}[direction]
-        seat = next((s for s in outcome.seats if s.stage == stage), None)
-        where = node.name if seat else f"{node.name} {side}"
-        self.title.setText(
-            f"{where} by band, {UNIT[Domain(node.domain)]}: level, noise{', room' if seat else ''}"
+        data = self.data
+        self.title.show_text(f"{data.name}, {data.unit} by band")
+        self.key.show_names(tuple(name for name, _ in LINES if data.line(name) is not None))
+        for name, line in self.lines.items():
+            values = data.line(name)
+            line.setData([], []) if values is None else line.setData(data.places, values)
+        if may_scale or self._ends == (0.0, 0.0):
+            self._scale(*data.ends)
+        self._read(self.band)
+
+    def _scale(self, low: float, high: float) -> None:
+        """Ranges move with the selection, never under a moving hand."""
+        if (low, high) == self._ends:
+            return
+        self._ends = (low, high)
+        step = 20 if high - low <= 100 else 40
+        first = int(-(-low // step) * step)
+        at = list(range(first, int(high) + 1, step))
+        self.plot.setYRange(low, high, padding=0)
+        self.plot.getAxis("left").setTicks([[(level, str(level).replace("-", words.MINUS)) for level in at]])
+        self.rules.setData(
+            [x for _ in at for x in (-0.5, len(BANDS_HZ) - 0.5)], [level for level in at for _ in range(2)]
         )
-        self.level.setData(self._x, _finite(bands.level_db))
-        self.noise.setData(self._x, _finite(bands.noise_db))
-        if seat is not None and seat.ambient is not None and seat.ambient.octave_hz:
-            # An octave's level spread evenly over its three bands stands 4.77 dB lower in each.
-            octave = np.array(seat.ambient.octave_db) - 10.0 * math.log10(3.0)
-            self.room.setData(np.log10(np.array(seat.ambient.octave_hz)), octave)
+
+    # -- reading a band --------------------------------------------------------------------------------------
+    def _read(self, band: int | None) -> None:
+        self.band = band
+        data = self.data
+        if data is None:
+            self.reading.show_text("Select a stage or a seat to see it by band.")
+            self.mark.setData([], [])
+            self.reading.show()
+            self.key.hide()
+            return
+        self.reading.show_text(data.about if band is None else data.reading(band))
+        self.mark.setData(*(([], []) if band is None else ([band, band], list(self._ends))))
+        self.reading.setVisible(band is not None)
+        self.key.setVisible(band is None)
+        self.setToolTip(data.about)
+        self.setAccessibleDescription(f"{data.name}. {self.reading.text()}")
+
+    def eventFilter(self, watched: object, event: QEvent) -> bool:
+        """A pointer over the plot reads the band under it."""
+        if isinstance(event, QMouseEvent) and event.type() == QEvent.Type.MouseMove and self.data is not None:
+            where = self.plot.getViewBox().mapSceneToView(QPointF(event.position()))
+            self._read(min(len(BANDS_HZ) - 1, max(0, round(where.x()))))
+        elif event.type() == QEvent.Type.Leave:
+            self._read(None)
+        return event.type() == QEvent.Type.Wheel
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        step = {Qt.Key.Key_Left: -1, Qt.Key.Key_Right: 1}.get(Qt.Key(event.key()))
+        if step is None:
+            super().keyPressEvent(event)
         else:
-            self.room.setData([], [])
-        if not self.document.gesture_open:
-            self._fit(bands)
+            middle = 17 if self.band is None else self.band + step
+            self._read(min(len(BANDS_HZ) - 1, max(0, middle)))
 
-    def _choose(self, outcome: Outcome) -> tuple[str, str] | None:
-        project = outcome.project
-        chosen = [key for key in sorted(self.document.selection) if key in project.stage]
-        if not chosen:
-            chosen = [seat.stage for seat in outcome.seats][:1]
-        for key in chosen:
-            stage = project.stage[key]
-            if stage.outputs():
-                return key, "out"
-            if stage.inputs():
-                return key, "in"
-        return None
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        super().focusInEvent(event)
+        self.update()
 
-    def _fit(self, bands: BandLevels) -> None:
-        levels = np.concatenate((bands.level_db, bands.noise_db))
-        levels = levels[np.isfinite(levels)]
-        if levels.size:
-            low = math.floor(float(levels.min()) / SPAN_DB) * SPAN_DB
-            high = math.ceil(float(levels.max()) / SPAN_DB + 0.2) * SPAN_DB
-            self.plot.setYRange(low, high, padding=0.0)
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        super().focusOutEvent(event)
+        self._read(None)
+        self.update()
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        painter = QPainter(self)
+        painter.setPen(self._inks.accent if self.hasFocus() else self._inks.hairline)
+        painter.drawLine(0, 0, self.width(), 0)
+        painter.end()
 
 
-def _finite(levels: np.ndarray) -> np.ndarray:
-    """Bands with nothing in them leave a gap."""
-    return np.where(np.isfinite(levels), levels, np.nan)
+class Key(QWidget):
+    """Which line is which: a sample of each, and its name."""
+
+    SAMPLE_PX, GAP_PX = 16, 10
+
+    def __init__(self, inks: Inks) -> None:
+        super().__init__()
+        self._inks = inks
+        self.names: tuple[str, ...] = ()
+        self.setFont(font(11))
+        self.setFixedHeight(QFontMetrics(font(11)).height())
+
+    def set_inks(self, inks: Inks) -> None:
+        """Show in other colours."""
+        self._inks = inks
+        self.update()
+
+    def show_names(self, names: tuple[str, ...]) -> None:
+        """Show the lines that there are."""
+        if names != self.names:
+            self.names = names
+            self.setAccessibleName(", ".join(names))
+            self.update()
+
+    def _wide(self, name: str) -> int:
+        return self.SAMPLE_PX + 4 + self.fontMetrics().horizontalAdvance(name) + self.GAP_PX
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        painter, x = QPainter(self), 0
+        for name, dash in LINES:
+            if name in self.names:
+                painter.setPen(QPen(_ink(self._inks, name), 2 if name == "level" else 1, dash))
+                painter.drawLine(x, self.height() // 2, x + self.SAMPLE_PX, self.height() // 2)
+                painter.setPen(self._inks.muted)
+                painter.drawText(
+                    x + self.SAMPLE_PX + 4, 0, 80, self.height(), Qt.AlignmentFlag.AlignVCenter, name
+                )
+                x += self._wide(name)
+        painter.end()
+
+
+def _ink(inks: Inks, name: str) -> QColor:
+    return {"level": inks.level, "noise": inks.noise, "room": inks.muted}[name]

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-from PySide6.QtCore import QEvent, QObject, QSize, Qt, QTimer
+from PySide6.QtCore import QSize, Qt, QTimer
 from PySide6.QtWidgets import QApplication, QScrollArea, QVBoxLayout, QWidget
 
 from app.document import Document
@@ -35,16 +35,19 @@ class StageCard(QWidget):
         self._scene = Scene(document, inks, Hand(document), self._gate.is_open, self._soon.start)
         self.builds = 0  # counted for the tests
         self.pane: Pane | None = None
-        self.scroll = QScrollArea()
-        self.scroll.setWidgetResizable(True)
-        self.scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-        self.scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self.scroll.verticalScrollBar().valueChanged.connect(lambda _value: self._gate.scrolled())
+        self.area = QScrollArea()
+        self.area.setWidgetResizable(True)
+        self.area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.area.verticalScrollBar().valueChanged.connect(lambda _value: self._gate.scrolled())
         body = QVBoxLayout(self)
         body.setContentsMargins(0, 0, 0, 0)
-        body.addWidget(self.scroll)
+        body.addWidget(self.area)
         self.setMinimumWidth(240)
         self.setStyleSheet(card_sheet(inks))
+        application = QApplication.instance()
+        assert isinstance(application, QApplication)
+        application.focusChanged.connect(self._keep_in_view)
         document.changed.connect(self._changed)
         document.solved.connect(self._solved)
         document.selection_changed.connect(self._selected)
@@ -74,7 +77,7 @@ class StageCard(QWidget):
         self._scene.opened.clear()
         self._scene.wanted = None
         self._build()
-        self.scroll.verticalScrollBar().setValue(0)
+        self.area.verticalScrollBar().setValue(0)
 
     def _wanted(self) -> Contents:
         return contents_of(self.document.project, self.document.selection, self._scene.opened)
@@ -85,33 +88,31 @@ class StageCard(QWidget):
     # -- building --------------------------------------------------------------------------------------------
     def _build(self) -> None:
         """Put other rows in place of these; the keyboard and the view stay where they are, as far as they can."""
-        kept, scrolled = self._focus(), self.scroll.verticalScrollBar().value()
-        old = self.scroll.takeWidget()  # what is being typed is taken now, as by leaving it
+        kept, scrolled = self._focus(), self.area.verticalScrollBar().value()
+        old = self.area.takeWidget()  # what is being typed is taken now, as by leaving it
         self.pane = None
         self._soon.stop()
         if old is not None:
             old.hide()
             old.deleteLater()
         contents = self._wanted()
-        self._scene.opened &= {(key, name.partition(".")[0]) for key in contents.keys[:1] for name in contents.figures}
+        self._scene.opened &= {
+            (key, name.partition(".")[0]) for key in contents.keys[:1] for name in contents.figures
+        }
         self.pane = Pane(self._scene, contents)
         self.builds += 1
         self.pane.show_project(self.document.project)
         if self.document.outcome.project.same_as(self.document.project):
             self.pane.show_outcome(self.document.outcome)
-        self.scroll.setWidget(self.pane)
-        for part in self.pane.findChildren(QWidget):
-            part.installEventFilter(self)
-        self.scroll.verticalScrollBar().setValue(scrolled)
+        self.area.setWidget(self.pane)
+        self.area.verticalScrollBar().setValue(scrolled)
         self._restore(kept)
 
-    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
-        """Keep what has the keyboard in view."""
-        if event.type() == QEvent.Type.FocusIn and isinstance(watched, QWidget) and event.reason() in (  # type: ignore[attr-defined]
-            Qt.FocusReason.TabFocusReason, Qt.FocusReason.BacktabFocusReason, Qt.FocusReason.OtherFocusReason,
-        ):  # fmt: skip
-            self.scroll.ensureWidgetVisible(watched, 0, 40)
-        return False
+    def _keep_in_view(self, _before: QWidget | None, now: QWidget | None) -> None:
+        """Scroll to what the keyboard has come to; a mouse is where it points already."""
+        by_mouse = QApplication.mouseButtons() != Qt.MouseButton.NoButton
+        if now is not None and self.pane is not None and not by_mouse and self.pane.isAncestorOf(now):
+            self.area.ensureWidgetVisible(now, 0, 40)
 
     def _focus(self) -> Place | None:
         focused = QApplication.focusWidget()

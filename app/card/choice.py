@@ -4,8 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from PySide6.QtCore import QEvent, QObject, Qt, Signal
-from PySide6.QtGui import QFontMetrics, QResizeEvent, QWheelEvent
+from PySide6.QtCore import QEvent, QObject, QPointF, Qt, Signal
+from PySide6.QtGui import (
+    QFontMetrics,
+    QKeyEvent,
+    QPainter,
+    QPaintEvent,
+    QPalette,
+    QPen,
+    QResizeEvent,
+    QWheelEvent,
+)
 from PySide6.QtWidgets import QButtonGroup, QComboBox, QPushButton, QSizePolicy, QWidget
 
 from app.inks import font
@@ -15,6 +24,7 @@ from .pieces import column
 ROOM_PX = 240  # what the card leaves at its narrowest
 MOST_SEGMENTS = 4
 PADDING_PX = 14
+_ALONG = {Qt.Key.Key_Left: -1, Qt.Key.Key_Up: -1, Qt.Key.Key_Right: 1, Qt.Key.Key_Down: 1}
 
 
 class Choice(QWidget):
@@ -82,12 +92,10 @@ class Segments(QWidget):
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         """Left and right choose the neighbour, as in any such row."""
-        if event.type() == QEvent.Type.KeyPress and watched in self.buttons:
-            step = {Qt.Key.Key_Left: -1, Qt.Key.Key_Up: -1, Qt.Key.Key_Right: 1, Qt.Key.Key_Down: 1}.get(
-                event.key()  # type: ignore[attr-defined]
-            )
+        if isinstance(event, QKeyEvent) and event.type() == QEvent.Type.KeyPress and watched in self.buttons:
+            step = _ALONG.get(Qt.Key(event.key()))
             if step is not None:
-                place = self.buttons.index(watched) + step  # type: ignore[arg-type]
+                place = self.buttons.index(watched) + step
                 if 0 <= place < len(self.buttons):
                     self.buttons[place].setFocus(Qt.FocusReason.OtherFocusReason)
                     self.buttons[place].click()
@@ -122,6 +130,16 @@ class StillCombo(QComboBox):
         """Show a place; -1 several."""
         if place != self.currentIndex():
             self.setCurrentIndex(place)
+
+    def paintEvent(self, event: QPaintEvent) -> None:
+        """The style sheet leaves out the arrow that says there is more."""
+        super().paintEvent(event)
+        painter = QPainter(self)
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        painter.setPen(QPen(self.palette().color(QPalette.ColorRole.PlaceholderText), 1.4))
+        x, y = self.width() - 13.0, self.height() / 2.0 - 1.5
+        painter.drawPolyline([QPointF(x - 3.5, y), QPointF(x, y + 3.5), QPointF(x + 3.5, y)])
+        painter.end()
 
     def wheelEvent(self, event: QWheelEvent) -> None:
         if self.hasFocus():

@@ -90,7 +90,8 @@ def _declared(
     options = tuple(
         name
         for name, spec in first.option_specs().items()
-        if first.in_use(name) and all(each.option_specs().get(name) == spec and each.in_use(name) for each in rest)
+        if first.in_use(name)
+        and all(each.option_specs().get(name) == spec and each.in_use(name) for each in rest)
     )
     figures: list[str] = []
     absent: list[str] = []

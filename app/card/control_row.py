@@ -5,8 +5,10 @@ from __future__ import annotations
 import math
 
 from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QLabel
 
 from app import edits
+from app.inks import font
 from engine.project import Project
 from engine.stages import Setting, Stage, panel
 from engine.stages.declare import ControlRange, ControlSpec, State
@@ -39,13 +41,16 @@ class ControlRow(Part):
         self.label.set_help(spec.help)
         self.value = Entry(f"{spec.label}, value", bare=True, strong=True)
         self.value.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
-        self.value.setFixedWidth(VALUE_PX)
+        self.value.fix_width(VALUE_PX)
+        self.value.setProperty("value", True)
         self.value.steps = True
         self.slider = StepSlider(spec.label, scene.inks, scene.may_wheel)
         self.switch = Choice(spec.label, [text for text, _ in ranged.choices]) if ranged.choices else None
         self.panel = Entry(f"{spec.label}, marking on the panel", bare=True, size_px=11)
         self.panel.setProperty("small", True)
-        self.panel.setToolTip(tip("How it reads on its panel. Type your own marking; empty brings ours back."))
+        self.panel.setToolTip(
+            tip("How it reads on its panel. Type your own marking; empty brings ours back.")
+        )
         self.state = Word()
         self.said = Said()
         self._arrange()
@@ -55,8 +60,9 @@ class ControlRow(Part):
 
     def _arrange(self) -> None:
         body = column(self)
-        foot = Elided("panel", 11, quiet=True)
-        foot.setFixedWidth(foot.sizeHint().width() + 2)
+        foot = QLabel("panel")
+        foot.setFont(font(11))
+        foot.setProperty("quiet", True)
         if self.switch is None:
             body.addLayout(row(self.label, self.value))
             body.addWidget(self.slider)
@@ -96,9 +102,13 @@ class ControlRow(Part):
         self._show_panel(spec, ranged, settings, agree)
         self._show_state(spec, settings)
 
-    def _show_panel(self, spec: ControlSpec, ranged: ControlRange, settings: list[Setting], agree: bool) -> None:
+    def _show_panel(
+        self, spec: ControlSpec, ranged: ControlRange, settings: list[Setting], agree: bool
+    ) -> None:
         own = {each.panel for each in settings}
-        ours = panel.marking(spec, ranged, settings[0].model_copy(update={"panel": None})) if agree else SEVERAL
+        ours = (
+            panel.marking(spec, ranged, settings[0].model_copy(update={"panel": None})) if agree else SEVERAL
+        )
         if self.panel.placeholderText() != ours:
             self.panel.setPlaceholderText(ours)
             self.panel.setAccessibleDescription(ours)

@@ -2,8 +2,18 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QRect, Qt, Signal
-from PySide6.QtGui import QColor, QFocusEvent, QKeyEvent, QKeySequence, QMouseEvent, QPainter, QPaintEvent
+from PySide6.QtCore import QEvent, QObject, QRect, Qt, Signal
+from PySide6.QtGui import (
+    QColor,
+    QFocusEvent,
+    QFontMetrics,
+    QKeyEvent,
+    QKeySequence,
+    QMouseEvent,
+    QPainter,
+    QPaintEvent,
+    QResizeEvent,
+)
 from PySide6.QtWidgets import QLineEdit, QSizePolicy, QStyle, QStyleOptionFrame
 
 from app.inks import font
@@ -89,17 +99,26 @@ class Entry(QLineEdit):
         if not self._echo:
             return True
         text = self.fontMetrics().horizontalAdvance(self.text())
-        return max(LEAST_TEXT_PX, text) + ECHO_GAP_PX + self._echo_px() <= self._inside().width() - 4
+        return max(LEAST_TEXT_PX, text) + ECHO_GAP_PX + self._echo_px() <= self._whole().width() - 4
 
     # -- events ----------------------------------------------------------------------------------------------
-    def event(self, event: QEvent) -> bool:
-        """Undo belongs to the project, unless there is typing to undo."""
-        if event.type() == QEvent.Type.ShortcutOverride and isinstance(event, QKeyEvent):
-            undoes = event.matches(QKeySequence.StandardKey.Undo) or event.matches(QKeySequence.StandardKey.Redo)
-            if undoes and not self.is_dirty:
+    def fix_width(self, px: int) -> None:
+        """Take this width and no other."""
+        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
+        self.setFixedWidth(px)
+
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        """Undo belongs to the project, unless there is typing to undo. Listens to itself, while it has the keyboard."""
+        if (
+            not self.is_dirty
+            and isinstance(event, QKeyEvent)
+            and event.type() == QEvent.Type.ShortcutOverride
+        ):
+            undoing = (QKeySequence.StandardKey.Undo, QKeySequence.StandardKey.Redo)
+            if any(event.matches(keys) for keys in undoing):
                 event.ignore()
-                return False
-        return super().event(event)
+                return True
+        return False
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         key = event.key()
@@ -114,7 +133,9 @@ class Entry(QLineEdit):
         elif self.steps and key in up_down:
             self.take()
             if not self.is_wrong:
-                self.stepped.emit(up_down[Qt.Key(key)], bool(event.modifiers() & Qt.KeyboardModifier.ShiftModifier))
+                self.stepped.emit(
+                    up_down[Qt.Key(key)], bool(event.modifiers() & Qt.KeyboardModifier.ShiftModifier)
+                )
         else:
             super().keyPressEvent(event)
 
@@ -125,12 +146,14 @@ class Entry(QLineEdit):
 
     def focusInEvent(self, event: QFocusEvent) -> None:
         super().focusInEvent(event)
+        self.installEventFilter(self)
         self._fresh = event.reason() == Qt.FocusReason.MouseFocusReason
         if event.reason() != Qt.FocusReason.PopupFocusReason:
             self.selectAll()
 
     def focusOutEvent(self, event: QFocusEvent) -> None:
         super().focusOutEvent(event)
+        self.removeEventFilter(self)
         self._fresh = False
         if event.reason() != Qt.FocusReason.PopupFocusReason:
             self.take()
@@ -143,7 +166,7 @@ class Entry(QLineEdit):
             self.selectAll()
         self._fresh = False
 
-    def resizeEvent(self, event) -> None:  # type: ignore[no-untyped-def]
+    def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
         self._fit_echo()
         self.fitted.emit()
@@ -158,8 +181,10 @@ class Entry(QLineEdit):
             painter = QPainter(self)
             painter.setFont(font(11))
             painter.setPen(self._echo_ink)
-            where = inside.adjusted(0, 0, self.textMargins().right() - 2, 0)
-            painter.drawText(where, int(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter), self._echo)
+            where = self._whole().adjusted(0, 0, -2, 0)
+            painter.drawText(
+                where, int(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter), self._echo
+            )
             painter.end()
 
     # -- inside ----------------------------------------------------------------------------------------------
@@ -177,14 +202,14 @@ class Entry(QLineEdit):
         painter.end()
 
     def _inside(self) -> QRect:
+        return self._whole().marginsRemoved(self.textMargins())
+
+    def _whole(self) -> QRect:
         option = QStyleOptionFrame()
         self.initStyleOption(option)
-        whole = self.style().subElementRect(QStyle.SubElement.SE_LineEditContents, option, self)
-        return whole.marginsRemoved(self.textMargins())
+        return self.style().subElementRect(QStyle.SubElement.SE_LineEditContents, option, self)
 
     def _echo_px(self) -> int:
-        from PySide6.QtGui import QFontMetrics
-
         return QFontMetrics(font(11)).horizontalAdvance(self._echo)
 
     def _fit_echo(self) -> None:

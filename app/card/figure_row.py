@@ -43,7 +43,7 @@ class FigureRow(Part):
         self.tolerance = Entry(f"{self.label.text()}, tolerance", bare=True, size_px=11)
         self.tolerance.setProperty("small", True)
         self.tolerance.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
-        self.tolerance.setFixedWidth(TOLERANCE_PX)
+        self.tolerance.fix_width(TOLERANCE_PX)
         self.tolerance.setPlaceholderText("± none")
         self.tolerance.setToolTip(tip("How far it may be off: ±1 dB, 5 % or ±20 ohm. Empty: not said."))
         self.under = Elided("", 11, quiet=True)
@@ -100,6 +100,7 @@ class FigureRow(Part):
         try:
             parsed = parse(text, self.spec.quantity)
             said = echo(parsed)
+            said = "" if _plain(said) == _plain(text) else said
             ink = inks.mend if parsed.missing else inks.muted
         except FigureError:
             pass
@@ -159,7 +160,9 @@ class FigureRow(Part):
             self.scene.hand.do(
                 f"{self.spec.label} of {self.scene.called(self.keys)} is {_from(after)}",
                 self.keys,
-                lambda project, key: edits.set_figure(project, key, self.name, self._text_of(key), origin=after),
+                lambda project, key: edits.set_figure(
+                    project, key, self.name, self._text_of(key), origin=after
+                ),
             )
         )
 
@@ -226,6 +229,11 @@ class FigureRow(Part):
     def _origin_of(self, key: str) -> Origin | None:
         figure = self._figure_of(key)
         return figure.origin if figure else None
+
+
+def _plain(text: str) -> str:
+    """The text without what makes no difference, to see whether an echo says anything new."""
+    return "".join(text.lower().replace("−", "-").replace("ohm", "ω").replace("+", "").split())
 
 
 def _example(spec: FigureSpec) -> str:

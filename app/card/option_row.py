@@ -38,7 +38,7 @@ class OptionRow(Part):
             body.addWidget(self.choice)
         else:
             self.number = Entry(self.spec.label)
-            self.number.setFixedWidth(NUMBER_PX)
+            self.number.fix_width(NUMBER_PX)
             self.number.setToolTip(tip(f"{self.spec.help} From {self.spec.low} to {self.spec.high}."))
             self.number.steps = True
             self.number.taken.connect(self._typed)
@@ -64,7 +64,9 @@ class OptionRow(Part):
             self.number.settle(text)
         elif not text.strip().isdecimal() or not low <= int(text) <= high:
             self.number.refuse(text)
-            self.said.say(sentence(f"{text.strip() or 'nothing'} will not do: type a whole number from {low} to {high}"))
+            self.said.say(
+                sentence(f"{text.strip() or 'nothing'} will not do: type a whole number from {low} to {high}")
+            )
         else:
             self._set(int(text))
 

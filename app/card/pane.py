@@ -39,7 +39,9 @@ class Pane(QWidget):
         self._body = QVBoxLayout(self)
         self._body.setContentsMargins(PADDING_PX, TOP_PX, PADDING_PX, PADDING_PX)
         self._body.setSpacing(GAP_PX)
-        {"project": self._project, "stages": self._stages, "links": self._links, "mixed": self._mixed}[contents.sort]()
+        {"project": self._project, "stages": self._stages, "links": self._links, "mixed": self._mixed}[
+            contents.sort
+        ]()
         self._body.addStretch(1)
 
     def show_project(self, project: Project) -> None:
@@ -100,7 +102,9 @@ class Pane(QWidget):
         self.rows += [revision, author]
         self._figures("")
         self._options("")
-        self._add(TextRow(scene, keys, "note", "Note", lambda _p, text: edits.set_header(_p, note=text.strip())))
+        self._add(
+            TextRow(scene, keys, "note", "Note", lambda _p, text: edits.set_header(_p, note=text.strip()))
+        )
 
     # -- groups ----------------------------------------------------------------------------------------------
     def _results(self, stage: Stage) -> None:
@@ -147,13 +151,13 @@ class Pane(QWidget):
             TextRow(scene, keys, name, label, partial(_put, keys, name))
             for name, label in (("rack", "Rack"), ("area", "Area"))
         )
-        count = TextRow(scene, keys, "count", "Alike", lambda p, text: edits.set_count(p, list(keys), _whole(text)))
-        count.setFixedWidth(52)
-        count.field.setToolTip("How many alike it stands for")
-        line = row(rack, area, count)
-        line.setStretch(1, 1)
-        self._body.addLayout(line)
-        self.rows += [rack, area, count]
+        count = TextRow(
+            scene, keys, "count", "Alike", lambda p, text: edits.set_count(p, list(keys), _whole(text))
+        )
+        count.setFixedWidth(60)
+        self._add(rack)
+        self._body.addLayout(row(area, count))
+        self.rows += [area, count]
         self._add(TextRow(scene, keys, "note", "Note", partial(_put, keys, "note")))
 
     # -- pieces ----------------------------------------------------------------------------------------------
@@ -251,7 +255,9 @@ def _name_row(scene: Scene, key: str) -> TextRow:
 
 
 def _put(keys: tuple[str, ...], name: str, project: Project, text: str) -> Changes:
-    return {key: pair for each in keys for key, pair in edits.set_place(project, each, **{name: text}).items()}
+    return {
+        key: pair for each in keys for key, pair in edits.set_place(project, each, **{name: text}).items()
+    }
 
 
 def _whole(text: str) -> int:
@@ -301,4 +307,3 @@ def _levels(key: str, outcome: Outcome) -> tuple[results.Levels, ...]:
 def _link_lines(key: str, outcome: Outcome) -> tuple[results.Line, ...]:
     link = outcome.project.link.get(key)
     return () if link is None else results.link_lines(outcome, link)
-

@@ -15,7 +15,9 @@ HEAD_GAP_PX = 12
 class Elided(QLabel):
     """One line of text, cut with an ellipsis where there is no room; the whole of it is in the tip."""
 
-    def __init__(self, text: str = "", size_px: int = 12, *, strong: bool = False, quiet: bool = False) -> None:
+    def __init__(
+        self, text: str = "", size_px: int = 12, *, strong: bool = False, quiet: bool = False
+    ) -> None:
         super().__init__()
         self._help = ""
         self.setFont(font(size_px, strong=strong))
@@ -136,9 +138,12 @@ QPushButton[word="strong"] {{ color: {inks.accent.name()}; }}
 QPushButton[word]:focus {{ border-color: {inks.accent.name()}; }}
 QPushButton[segment="true"] {{ padding: 0 4px; }}
 QLineEdit[bare="true"] {{ background: transparent; border-color: transparent; padding: 0; }}
-QLineEdit[bare="true"]:hover {{ border-color: {inks.hairline.name()}; padding: 0 4px; }}
-QLineEdit[bare="true"]:focus {{ background: {inks.raised.name()}; border-color: {inks.accent.name()}; padding: 0 4px; }}
-QLineEdit[bare="true"][wrong="true"] {{ border-color: {inks.stop.name()}; padding: 0 4px; }}
+QLineEdit[title="true"] {{ margin-left: -3px; }}
+QLineEdit[value="true"] {{ margin-right: -4px; }}
+QLineEdit[bare="true"]:hover {{ border-color: {inks.hairline.name()}; }}
+QLineEdit[bare="true"]:focus {{ background: {inks.raised.name()}; border-color: {inks.accent.name()}; }}
+QLineEdit[bare="true"][wrong="true"] {{ border-color: {inks.stop.name()}; }}
+QComboBox {{ padding-left: 8px; }}
 QLineEdit[small="true"] {{ min-height: 18px; }}
 QScrollArea, QWidget#card {{ background: {inks.paper.name()}; border: none; }}
 """

@@ -44,7 +44,7 @@ class Owner:
     stage: str
     name: str
     share: float
-    hiss_a: float
+    hiss_a: float | None
 
 
 def levels_of(outcome: Outcome, stage: str) -> tuple[Levels, ...]:
@@ -79,7 +79,9 @@ def seat_lines(seat: SeatLevels) -> tuple[Line, ...]:
 def owners_of(seat: SeatLevels) -> tuple[Owner, ...]:
     """The largest parts of a seat's hiss."""
     return tuple(
-        Owner(part.stage, f"{part.name}, {part.origin}" if part.origin else part.name, part.share, part.hiss_a)
+        Owner(
+            part.stage, f"{part.name}, {part.origin}" if part.origin else part.name, part.share, part.hiss_a
+        )
         for part in seat.budget[:MOST_OWNERS]
     )
 
@@ -119,12 +121,18 @@ def link_lines(outcome: Outcome, link: Link) -> tuple[Line, ...]:
     elif ahead.unit == behind.unit and ahead.level is not None and behind.level is not None:
         lines.append(Line("On the way", words.gain(behind.level - ahead.level)))
     if behind.peak_margin is not None:
-        lines.append(Line("Peak margin at its end", words.margin(behind.peak_margin), _short(behind.peak_margin)))
+        lines.append(
+            Line("Peak margin at its end", words.margin(behind.peak_margin), _short(behind.peak_margin))
+        )
     return tuple(lines)
 
 
 def _section(each: SectionLevels) -> Levels:
-    clips = [clip for clip in (each.clip_out, None if each.unit_in != each.unit else each.clip_in) if clip is not None]
+    clips = [
+        clip
+        for clip in (each.clip_out, None if each.unit_in != each.unit else each.clip_in)
+        if clip is not None
+    ]
     clip = each.clip_out if each.clip_out is not None else (clips[0] if clips else None)
     gain = NO_GAIN if each.unit_in != each.unit else words.number(each.gain_db, signed=True)
     return Levels(

@@ -29,7 +29,9 @@ class Scene:
     hand: Hand
     may_wheel: Callable[[], bool]
     rebuild: Callable[[], None]  # the card must have other rows; done when the event is over
-    refused: dict[tuple[Keys, str], tuple[str, str]] = field(default_factory=dict)  # text and reason, until mended
+    refused: dict[tuple[Keys, str], tuple[str, str]] = field(
+        default_factory=dict
+    )  # text and reason, until mended
     opened: set[tuple[str, str]] = field(default_factory=set)  # figures asked for and not yet given
     wanted: tuple[Keys, str] | None = None  # the row to take the keyboard once it is there
 

@@ -184,7 +184,9 @@ class StepSlider(QSlider):
             painter.setBrush(blend(inks.accent, inks.paper, 0.25))
             painter.drawEllipse(QPointF(x, middle), HANDLE_PX + 4.0, HANDLE_PX + 4.0)
         painter.setPen(QPen(live, 2.0))
-        painter.setBrush(live if self.isSliderDown() or self.underMouse() and self.isEnabled() else inks.raised)
+        painter.setBrush(
+            live if self.isSliderDown() or (self.underMouse() and self.isEnabled()) else inks.raised
+        )
         painter.drawEllipse(QPointF(x, middle), HANDLE_PX, HANDLE_PX)
         painter.end()
 

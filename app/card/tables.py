@@ -6,7 +6,7 @@ from collections.abc import Callable
 
 from PySide6.QtCore import QRectF, QSize, Qt
 from PySide6.QtGui import QFontMetrics, QPainter, QPaintEvent
-from PySide6.QtWidgets import QAbstractButton, QSizePolicy, QWidget
+from PySide6.QtWidgets import QAbstractButton, QSizePolicy
 
 from app import words
 from app.inks import Inks, blend, font
@@ -62,7 +62,9 @@ class Lines(Painted):
             painter.drawText(box, int(RIGHT | MIDDLE), line.text)
             painter.setFont(font(12))
             painter.setPen(self.inks.muted)
-            label = painter.fontMetrics().elidedText(line.label, Qt.TextElideMode.ElideRight, round(box.width() - used - 8))
+            label = painter.fontMetrics().elidedText(
+                line.label, Qt.TextElideMode.ElideRight, round(box.width() - used - 8)
+            )
             painter.drawText(box, int(LEFT | MIDDLE), label)
         painter.end()
 
@@ -104,19 +106,25 @@ class LevelTable(Painted):
             room = self.width() - painter.fontMetrics().horizontalAdvance(each.unit) - 8
             painter.setPen(inks.ink)
             painter.drawText(
-                name, int(LEFT | MIDDLE), painter.fontMetrics().elidedText(each.name, Qt.TextElideMode.ElideRight, room)
+                name,
+                int(LEFT | MIDDLE),
+                painter.fontMetrics().elidedText(each.name, Qt.TextElideMode.ElideRight, room),
             )
             self._paint_cells(painter, top + 15, self.cells(each), short=each.short)
         painter.end()
 
-    def _paint_cells(self, painter: QPainter, top: int, texts: tuple[str, ...], *, short: bool = False) -> None:
+    def _paint_cells(
+        self, painter: QPainter, top: int, texts: tuple[str, ...], *, short: bool = False
+    ) -> None:
         wide = self.width() / len(self.HEADS)
         for place, text in enumerate(texts):
             if short and place == 3:
                 painter.save()
                 painter.setFont(font(11, strong=True))
                 painter.setPen(self.inks.stop)
-            painter.drawText(QRectF(place * wide, top, wide, 16), int((LEFT if place == 0 else RIGHT) | MIDDLE), text)
+            painter.drawText(
+                QRectF(place * wide, top, wide, 16), int((LEFT if place == 0 else RIGHT) | MIDDLE), text
+            )
             if short and place == 3:
                 painter.restore()
 
@@ -194,4 +202,3 @@ class Bar(QAbstractButton):
 def _spoken(each: Levels) -> str:
     said = f"{each.name}: level {each.level} {each.unit}, clip {each.clip}, margin {each.margin} dB, noise {each.noise}"
     return said if not each.gain else f"{said}, gain {each.gain} dB"
-

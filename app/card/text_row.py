@@ -32,6 +32,7 @@ class TextRow(Part):
         self.scene, self.keys, self.name, self._make = scene, keys, name, make
         self._title = title or f"Set {label.lower()}"
         self.field = Entry(label, bare=bare, size_px=size_px, strong=bare)
+        self.field.setProperty("title", bare)
         self.said = Said()
         body = column(self, 2)
         if not bare:

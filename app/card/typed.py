@@ -54,12 +54,17 @@ def _dbu(volts: float) -> float:
 
 def _named(clean: str, spec: ControlSpec, ranged: ControlRange) -> float:
     lower = clean.lower()
-    names = [(" ".join(name.replace("−", "-").replace("\u202f", " ").lower().split()), value) for name, value in ranged.choices]
+    names = [
+        (" ".join(name.replace("−", "-").replace("\u202f", " ").lower().split()), value)
+        for name, value in ranged.choices
+    ]
     exact = [value for name, value in names if name == lower]
     begun = [value for name, value in names if lower and name.startswith(lower)]
     if exact or len(begun) == 1:
         return (exact or begun)[0]
-    raise ValueError(f"{spec.label} has no position {clean!r}: it has {', '.join(name for name, _ in ranged.choices)}")
+    raise ValueError(
+        f"{spec.label} has no position {clean!r}: it has {', '.join(name for name, _ in ranged.choices)}"
+    )
 
 
 def _ends(spec: ControlSpec, ranged: ControlRange) -> str:
