@@ -24,6 +24,7 @@ from .levels import (
     node_levels,
     section_levels,
 )
+from .limits import LimiterThreshold, limiter_thresholds
 from .loudspeaker import LoudspeakerLoad, loudspeaker_loads
 from .margins import Margins, find_margins
 from .paths import path_through, paths
@@ -120,6 +121,11 @@ class Outcome:
     def loudspeakers(self) -> tuple[LoudspeakerLoad, ...]:
         """What every loudspeaker has to carry."""
         return loudspeaker_loads(self.plan, self.solution)
+
+    @cached_property
+    def limiters(self) -> tuple[LimiterThreshold, ...]:
+        """Every limiter ahead of every loudspeaker, with the threshold that protects it."""
+        return limiter_thresholds(self.plan)
 
     @cached_property
     def narrowest(self) -> Narrowest | None:

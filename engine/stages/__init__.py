@@ -6,7 +6,7 @@ import importlib
 import pkgutil
 from collections.abc import Mapping
 
-from .base import Port, Stage
+from .base import Limiter, Port, Stage
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
 from .declared import Declared, Values
 
@@ -16,6 +16,7 @@ __all__ = [
     "ControlSpec",
     "Declared",
     "FigureSpec",
+    "Limiter",
     "OptionSpec",
     "Port",
     "Setting",

@@ -6,7 +6,7 @@ controls and options, its ports, and `sections`.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from typing import ClassVar
 
@@ -27,6 +27,20 @@ class Port:
     label: str = ""
     many: bool = False
     tap: bool = False
+
+
+@dataclass(frozen=True)
+class Limiter:
+    """A limiter inside a stage: the section that limits, the control that holds its threshold, and whether it is in.
+
+    `sort` is "rms" or "peak" (sine-scaled); `unit` that of the threshold, "dBu" or "dBFS".
+    """
+
+    section: str
+    control: str
+    sort: str
+    unit: str
+    is_in: bool
 
 
 class Stage(Declared):
@@ -53,6 +67,9 @@ class Stage(Declared):
     area: str | None = Field(default=None, max_length=80)
     count: int = Field(default=1, ge=1, le=1000)
     note: str | None = Field(default=None, max_length=2000)
+    made_for: Mapping[str, float] = Field(
+        default_factory=dict
+    )  # a limiter's control to the gain its threshold was set for
 
     # -- what a kind answers ---------------------------------------------------------------------------------
     def inputs(self) -> tuple[Port, ...]:
@@ -82,6 +99,10 @@ class Stage(Declared):
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         """Reasons why these figures cannot be true together; each becomes a refusal when typed."""
         return iter(())
+
+    def limiters(self) -> tuple[Limiter, ...]:
+        """The limiters of this stage, in signal order."""
+        return ()
 
     def load_ohm(self, values: Values) -> Number:
         """The impedance that turns a loudspeaker's voltage into watts [ohm]."""

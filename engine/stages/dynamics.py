@@ -13,7 +13,7 @@ from engine.sections import dynamics as curves
 from engine.sections.base import NEVER, Active, ActiveStage, Input, Number, Output, StageSections
 from engine.units import power_from_db, v2_from_dbu
 
-from .base import Port, Stage
+from .base import Limiter, Port, Stage
 from .declare import Setting, control, figure, option, switch
 from .declared import Values
 from .shared import (
@@ -148,6 +148,13 @@ class DynamicsProcessor(Stage):
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         yield from nominal_above_maximum(self.name, values, "max_v")
+
+    def limiters(self) -> tuple[Limiter, ...]:
+        if self.mode != "limiter":
+            return ()
+        digital = self.signal == "digital"
+        control_name, unit = ("threshold_dbfs", "dBFS") if digital else ("threshold_dbu", "dBu")
+        return (Limiter("detector", control_name, self.detector, unit, self.inserted.value == 1.0),)
 
     def summary(self) -> str:
         if not self.inserted.value:

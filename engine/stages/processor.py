@@ -17,7 +17,7 @@ from engine.sections.converters import analogue_to_digital, digital_to_analogue,
 from engine.sections.dynamics import peak_limiter, rms_limiter
 from engine.units import power_from_db
 
-from .base import Port, Stage
+from .base import Limiter, Port, Stage
 from .declare import Setting, control, figure, option, switch
 from .declared import Declared, Values
 from .parametric import Parametric, slope_option
@@ -205,6 +205,14 @@ class Processor(_Outputs, Parametric, Stage):
         if f"low_pass_{n}_hz" in values:
             found = found * filters.low_pass(axis.f_hz, values[f"low_pass_{n}_hz"], self.crossover_slope)
         return found
+
+    def limiters(self) -> tuple[Limiter, ...]:
+        found = []
+        for n in range(1, self.outputs_fitted + 1):
+            is_in = getattr(self, f"limiter_{n}").value == 1.0
+            found.append(Limiter(f"rms limiter {n}", f"limit_rms_{n}_dbfs", "rms", "dBFS", is_in))
+            found.append(Limiter(f"peak limiter {n}", f"limit_peak_{n}_dbfs", "peak", "dBFS", is_in))
+        return tuple(found)
 
     def summary(self) -> str:
         trims = {name: setting for name, _, setting in self.controls()}
