@@ -27,6 +27,7 @@ class Exports(QObject):
     def __init__(self, document: Document, ask: Ask, window: QWidget) -> None:
         super().__init__(window)
         self._document, self._ask, self._window = document, ask, window
+        self._printer: object = None
 
     def write_sheets(self, *_: object) -> bool:
         """Write the sheets as a PDF where the person says."""
@@ -45,7 +46,10 @@ class Exports(QObject):
         path = self._ask.save_path("Save the level diagram", self._suggested(" levels.png"), PICTURES)
         if path is None:
             return False
-        return self._write(path, lambda target: write_picture(target, self._document.outcome, path_shown, PICTURE_PX, LIGHT, look))
+        return self._write(
+            path,
+            lambda target: write_picture(target, self._document.outcome, path_shown, PICTURE_PX, LIGHT, look),
+        )
 
     def print_sheets(self, *_: object) -> None:
         """The system's print dialog, then the sheets."""
@@ -55,14 +59,22 @@ class Exports(QObject):
         printer = printing.make_printer()
         dialog = printing.print_dialog(printer, self._window)
         dialog.accepted.connect(lambda: self._print(printer))
-        _show(dialog)
+        self._show(dialog, printer)
 
     def preview_sheets(self, *_: object) -> None:
         """The sheets as they will be printed."""
         from .sheets import printing
 
         self._document.flush()
-        _show(printing.preview_dialog(printing.make_printer(), self._document.outcome, None, self._window))
+        printer = printing.make_printer()
+        self._show(printing.preview_dialog(printer, self._document.outcome, None, self._window), printer)
+
+    def _show(self, dialog: QDialog, printer: object) -> None:
+        """Over the window, without a loop of its own. The dialog does not keep its printer alive: we do."""
+        self._printer = printer
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.setWindowModality(Qt.WindowModality.WindowModal)
+        dialog.show()
 
     def _print(self, printer: object) -> None:
         from PySide6.QtPrintSupport import QPrinter
@@ -96,10 +108,3 @@ class Exports(QObject):
             self.noted.emit(f"Written: {path}")
             return True
         return False
-
-
-def _show(dialog: QDialog) -> None:
-    """Over the window, without a loop of its own."""
-    dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
-    dialog.setWindowModality(Qt.WindowModality.WindowModal)
-    dialog.show()

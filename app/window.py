@@ -251,10 +251,9 @@ class MainWindow(QMainWindow):
 
     # -- beside the work -------------------------------------------------------------------------------------
     def edit_venue(self) -> None:
-        """Name, revision and conditions of the venue."""
-        from .venue import VenueDialog
-
-        self._open(lambda: VenueDialog(self.document, self))
+        """Name, revision and conditions of the venue: the card shows them where nothing is selected."""
+        self.document.select(())
+        _take_focus(self.side.card)
 
     def show_about(self) -> None:
         """What this is, and the cautions."""

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+import gc
 from collections.abc import Iterator, Sequence
 from pathlib import Path
 
 import pytest
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication, QSlider, QWidget
+from PySide6.QtWidgets import QApplication, QLineEdit, QSlider, QWidget
 
 from app import edits, places, recovery
 from app.ask import Recovered, SaveFirst
@@ -480,25 +481,20 @@ def test_the_first_start_says_what_to_heed_once(window):
     assert window.notice.text == ""
 
 
-def test_the_venue_is_edited_beside_the_work(window, qtbot):
+def test_the_venue_is_edited_in_the_card(window):
+    window.document.load(chain(), None)
+    window.document.select(["pre"])
     keys(window, Key.Key_F4)
-    from app.venue import VenueDialog
-
-    dialog = next(widget for widget in window.findChildren(VenueDialog))
-    field = next(each for each in dialog.findChildren(QWidget) if each.accessibleName() == "Venue")
-    field.setFocus()
-    field.selectAll()  # type: ignore[attr-defined]
-    QTest.keyClicks(field, "Harbour Hall")
-    keys(field, Key.Key_Return)
+    assert window.document.selection == frozenset()
+    name = next(
+        field for field in window.side.card.findChildren(QLineEdit) if field.text() == "Untitled venue"
+    )
+    name.setFocus()
+    name.selectAll()
+    QTest.keyClicks(name, "Harbour Hall")
+    keys(name, Key.Key_Return)
     assert window.document.project.header.name == "Harbour Hall"
     assert "Harbour Hall" in window.top.venue.accessibleName()
-    warm = next(each for each in dialog.findChildren(QWidget) if each.accessibleName() == "Temperature")
-    warm.selectAll()  # type: ignore[attr-defined]
-    QTest.keyClicks(warm, "warm")
-    keys(warm, Key.Key_Return)
-    assert dialog.said.text()
-    assert window.document.project.header.temperature_c.text == "20 °C"
-    dialog.close()
 
 
 @pytest.mark.parametrize("name", ["about", "keys"])
@@ -523,6 +519,19 @@ def test_sheets_and_diagram_are_written_where_the_person_says(window, answers, t
     answers.path = tmp_path / "gone" / "levels.png"
     window.actions_["diagram"].trigger()
     assert answers.asked[-1].startswith("tell: levels.png was not written")
+
+
+def test_preview_and_print_dialog_stay_as_long_as_they_are_open(window, qtbot, monkeypatch):
+    from PySide6.QtPrintSupport import QPrintDialog, QPrintPreviewDialog
+
+    window.files.open_copy(places.sample_projects()[0])
+    for name, kind in (("preview", QPrintPreviewDialog), ("print", QPrintDialog)):
+        window.actions_[name].trigger()
+        gc.collect()  # a printer that nobody keeps would be gone now, and the dialog crash
+        dialog = window.findChild(kind)
+        qtbot.waitUntil(dialog.isVisible)
+        QApplication.processEvents()
+        dialog.close()
 
 
 def test_shortcuts_are_unique(window):
