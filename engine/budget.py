@@ -33,6 +33,7 @@ def contributions(
     totals: dict[Origin, Array] = defaultdict(lambda: np.zeros(rows.gain.shape[-1]))
     weight: dict[int, Array] = {row: np.ones(rows.gain.shape[-1])}
     followed = dict(zip(graph.pair_rows.tolist(), graph.pair_of.tolist(), strict=True))
+    exponent = dict(zip(graph.pair_rows.tolist(), np.where(graph.pair_power, 1.0, 0.5).tolist(), strict=True))
     # Rows stand parents first, so going down the indices meets every child before its parents.
     waiting = {row}
     while waiting:
@@ -42,7 +43,7 @@ def contributions(
         if at in solution.factors:
             reach = reach * solution.factors[at][NOISE, setting]
         elif (of := followed.get(at)) in solution.factors:
-            reach = reach * np.sqrt(solution.factors[of][NOISE, setting])  # type: ignore[index]
+            reach = reach * solution.factors[of][NOISE, setting] ** exponent[at]  # type: ignore[index]
         for part in rows.parts[at]:
             totals[part.origin] += part.power[setting] * reach
         start, stop = graph.parent_starts[at], graph.parent_starts[at + 1]

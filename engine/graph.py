@@ -17,7 +17,7 @@ class Rank:
     `parents` [singles] is an index, or a slice where the parents stand in a run. `join_parents` lists the joins'
     parents end to end with their `join_weights`; `join_starts` says where each join begins. `coherent` are joins
     whose programme is stated to add as voltage: their own places among the joins, with the counts to add. `dynamic` rows take
-    a static curve; `dynamic_pairs` are covariance rows and the dynamic row each follows, solved before it.
+    a static curve; `dynamic_pairs` are covariance rows, the dynamic row each follows (solved before it), and the exponent of its gain.
     """
 
     singles: slice
@@ -29,7 +29,7 @@ class Rank:
     coherent: Index
     coherent_counts: NDArray[np.float64]
     dynamic: tuple[int, ...]
-    dynamic_pairs: tuple[tuple[int, int], ...]
+    dynamic_pairs: tuple[tuple[int, int, float], ...]
 
 
 @dataclass(frozen=True, eq=False)

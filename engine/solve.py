@@ -71,8 +71,8 @@ def solve(graph: Graph, rows: Rows, axis: Axis) -> Solution:
         if at.stop > at.start:
             _join(spectra, rank)
             spectra[at, NOISE] += noise[at]
-        for row, of in rank.dynamic_pairs:
-            spectra[row] *= np.sqrt(factors[of])
+        for row, of, exponent in rank.dynamic_pairs:
+            spectra[row] *= factors[of] ** exponent
         for row in rank.dynamic:
             factors[row] = _take_dynamics(spectra[row], rows, row, axis)
     return Solution(spectra, spectra @ axis.weights, factors)

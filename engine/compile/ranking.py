@@ -142,7 +142,7 @@ def _rank(
         coherent_counts=np.array(counts, dtype=float),
         dynamic=tuple(i for i in range(singles.start, joins.stop) if i in dynamic),
         dynamic_pairs=tuple(
-            (i, int(place[rows[i].pair_of]))
+            (i, int(place[rows[i].pair_of]), 1.0 if rows[i].twin else 0.5)
             for i in range(singles.start, singles.stop)
             if rows[i].sort is Sort.PAIR and int(place[rows[i].pair_of]) in dynamic
         ),
