@@ -17,6 +17,7 @@ import numpy as np
 from .compile import Plan
 from .levels import ZERO_POWER
 from .loudspeaker import loudspeakers_of
+from .project import Changes
 from .sections.base import Domain
 from .stages import Limiter, Stage
 from .stages.panel import marking
@@ -138,3 +139,29 @@ def _dependences(plan: Plan, passed: list[str]) -> Iterator[Dependence]:
                 yield Dependence(
                     key, stage.name, spec.label, marking(spec, stage.control_range(name), setting)
                 )
+
+
+def set_limiters(plan: Plan, only: frozenset[str] | None = None, *, locked_too: bool = False) -> Changes:
+    """The edit that sets every limiter in circuit to the threshold its loudspeakers need, on its own steps, never above.
+
+    `only` names the limiting stages to set; a limiter ahead of several loudspeakers takes the lowest threshold. Each
+    setting is noted with the gain it was made for. Locked controls are left alone unless `locked_too`.
+    """
+    lowest: dict[tuple[str, str], LimiterThreshold] = {}
+    for each in limiter_thresholds(plan):
+        key = (each.limiter, each.control)
+        if each.present is not None and (key not in lowest or each.wanted < lowest[key].wanted):
+            lowest[key] = each
+    changes: dict[str, tuple[Stage, Stage]] = {}
+    for (owner, control), each in lowest.items():
+        stage = changes[owner][1] if owner in changes else plan.project.stage[owner]
+        is_locked = getattr(stage, control).state == "locked"
+        if (only is not None and owner not in only) or (is_locked and not locked_too):
+            continue
+        steps = stage.control_range(control).positions
+        fitting = steps[steps <= each.wanted + 1e-9]
+        value = float(fitting[-1] if fitting.size else steps[0])
+        made = {**stage.made_for, control: round(each.gain_db, 3)}
+        after = stage.with_control(control, round(value, 6)).with_fields(made_for=made)
+        changes[owner] = (plan.project.stage[owner], after)
+    return {key: pair for key, pair in changes.items() if pair[0] != pair[1]}

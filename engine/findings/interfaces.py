@@ -13,6 +13,7 @@ from .registry import Finding, finder
 if TYPE_CHECKING:
     from engine.outcome import Outcome
 
+ENOUGH_SNR_DB = 75.0  # with so much left nobody hears what was lost
 STARVED_DB = 6.0  # S/N a stage's own noise may cost before it is said
 LINE_CLIP_DBU = 0.0  # an output that clips above this is at line level
 UNLIKE_DB = 10.0  # -10 dBV against +4 dBu is 11.8 dB
@@ -27,6 +28,8 @@ def starved_input(outcome: Outcome) -> Iterator[Finding]:
             continue
         into, out_of = outcome.node(key, "in"), outcome.node(key, "out")
         if into.snr is None or out_of.snr is None or into.snr - out_of.snr < STARVED_DB:
+            continue
+        if out_of.snr > ENOUGH_SNR_DB:
             continue
         name, spare = outcome.project.stage[key].name, into.peak_margin
         room = f" and its input has {spare:.1f} dB to spare" if spare is not None and spare > 0.0 else ""

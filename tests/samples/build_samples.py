@@ -13,6 +13,8 @@ from pathlib import Path
 from typing import Any
 
 from app.tabular import record
+from engine.compile import build_plan
+from engine.limits import set_limiters
 from engine.outcome import Outcome, evaluate
 from engine.project import Project
 from engine.store import write
@@ -49,10 +51,15 @@ def _rounded(value: Any) -> Any:
     return [_rounded(each) for each in value] if isinstance(value, list) else value
 
 
+def with_limiters_set(project: Project) -> Project:
+    """The venue with every limiter at the threshold its loudspeakers need."""
+    return project.with_changes(set_limiters(build_plan(project), locked_too=True))
+
+
 def main() -> None:
     """Write every venue and its results."""
     for name, build in VENUES.items():
-        project = build()
+        project = with_limiters_set(build())
         write(SAMPLE_PROJECTS / f"{name}.gainwright", project)
         text = json.dumps(frozen(evaluate(project)), ensure_ascii=False, indent=0, sort_keys=True)
         (HERE / f"{name}.json").write_text(text + "\n", encoding="utf-8")

@@ -22,7 +22,7 @@ from app.sheets.book import make_book
 from engine.outcome import Outcome, evaluate
 from engine.project import Project
 from engine.store import from_text, read, to_text
-from tests.samples.build_samples import SAMPLE_PROJECTS, VENUES, frozen
+from tests.samples.build_samples import SAMPLE_PROJECTS, VENUES, frozen, with_limiters_set
 
 HERE = Path(__file__).parent
 NAMES = list(VENUES)
@@ -54,7 +54,7 @@ def outcome(project) -> Outcome:
 
 
 def test_the_file_is_what_the_script_builds(name, project, path):
-    assert project.same_as(VENUES[name]())
+    assert project.same_as(with_limiters_set(VENUES[name]()))
     assert to_text(project) == path.read_text(encoding="utf-8")
     assert from_text(to_text(project))[0].same_as(project)
 
