@@ -114,6 +114,8 @@ def test_a_count_equals_as_many_drawn_out(web):
         (f"g{place}", side, f"g{place}_0") for place in range(len(web.sorts)) for side in ("in", "out")
     ]
     for stage, side, drawn in places:
-        for number in ("level", "peak", "noise", "noise_a", "clip", "ceiling"):
+        # Drawn out, a member's input is the very node of the output that feeds it, siblings and all; in one block it is its own.
+        ceiling = () if side == "in" and stage != "d" else ("ceiling",)
+        for number in ("level", "peak", "noise", "noise_a", "clip", *ceiling):
             found, expected = getattr(one.node(stage, side), number), getattr(many.node(drawn, side), number)
             assert found == pytest.approx(expected, abs=1e-7), (stage, side, number)
