@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import pytest
 
+from engine.limits import LimiterThreshold
 from engine.outcome import Outcome
 from tests.scenarios.build import DB, SHARE, amplifier, bare, line, loudspeaker, solved
 
@@ -25,6 +26,41 @@ def limited(
         amplifier(**{"rated_power_w": ["5000 W @ 8 ohm"], **ranges, **amp}),
         loudspeaker("driver", continuous_w=driver, peak_w=None),
     )  # fmt: skip
+
+
+def wanted(outcome: Outcome) -> dict[str, LimiterThreshold]:
+    """What the tool says each limiter of the processor should stand at, by its sort."""
+    return {each.sort: each for each in outcome.limiters}
+
+
+@pytest.mark.parametrize(("gain", "threshold_dbu"), [("32 dB", 5.27), ("26 dB", 11.27)])
+def test_s07_the_tool_names_the_threshold(gain, threshold_dbu):
+    """S07: 56.57 V at the driver; +5.27 dBu at 32 dB, +11.27 dBu at 26 dB, said in the processor's dBFS (0 dBFS = +24)."""
+    rms = wanted(limited(gain, rms_dbu=0.0))["rms"]
+    assert rms.load_v == pytest.approx(56.57, rel=SHARE)
+    assert rms.unit == "dBFS"
+    assert rms.wanted + 24.0 == pytest.approx(threshold_dbu, abs=DB)
+    assert rms.over_db == pytest.approx(-threshold_dbu, abs=DB)
+
+
+def test_s09_the_tool_names_both_thresholds():
+    """S09: rms −16.77 dBFS and peak −13.76 dBFS (sine convention) for 44.72 V rms and 89.44 V peak at the driver."""
+    found = wanted(limited("32 dB", rms_dbu=0.0, full_scale="+20 dBu", full_scale_dbu=20.0, driver="250 W"))
+    assert found["rms"].wanted == pytest.approx(-16.77, abs=DB)
+    assert found["peak"].wanted == pytest.approx(-13.76, abs=DB)
+    assert found["rms"].load_v == pytest.approx(44.72, rel=SHARE)
+    assert found["peak"].load_v == pytest.approx(89.44, rel=SHARE)
+
+
+def test_s44_the_tool_names_the_right_threshold_and_what_it_depends_on():
+    """S44: +15.27 dBu with the knob at −10, +5.27 with it open; the knob is among what the threshold depends on."""
+    given = {"rated_power_w": ["1000 W @ 8 ohm"]}
+    held = wanted(limited("32 dB", rms_dbu=15.27, attenuator_db=-10.0, **given))["rms"]
+    opened = wanted(limited("32 dB", rms_dbu=15.27, **given))["rms"]
+    assert held.wanted + 24.0 == pytest.approx(15.27, abs=DB)
+    assert opened.wanted + 24.0 == pytest.approx(5.27, abs=DB)
+    assert opened.over_db == pytest.approx(10.0, abs=DB)
+    assert ("amp", "Attenuator") in {(each.stage, each.control) for each in opened.depends_on}
 
 
 @pytest.mark.parametrize(("gain", "threshold_dbu"), [("32 dB", 5.27), ("26 dB", 11.27)])
