@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections import defaultdict
 from dataclasses import dataclass
+from heapq import heappop, heappush
 
 import numpy as np
 
@@ -35,10 +36,9 @@ def contributions(
     followed = dict(zip(graph.pair_rows.tolist(), graph.pair_of.tolist(), strict=True))
     exponent = dict(zip(graph.pair_rows.tolist(), np.where(graph.pair_power, 1.0, 0.5).tolist(), strict=True))
     # Rows stand parents first, so going down the indices meets every child before its parents.
-    waiting = {row}
+    waiting = [-row]
     while waiting:
-        at = max(waiting)
-        waiting.discard(at)
+        at = -heappop(waiting)
         reach = weight.pop(at)
         if at in solution.factors:
             reach = reach * solution.factors[at][NOISE, setting]
@@ -52,8 +52,11 @@ def contributions(
             graph.parent_rows[start:stop].tolist(), graph.parent_weights[start:stop].tolist(), strict=True
         ):
             if parent:
-                weight[parent] = weight[parent] + factor * through if parent in weight else factor * through
-                waiting.add(parent)
+                if parent in weight:
+                    weight[parent] = weight[parent] + factor * through
+                else:
+                    weight[parent] = factor * through
+                    heappush(waiting, -parent)
     return [Contribution(origin, power) for origin, power in totals.items()]
 
 

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from .compile import Plan
+from .sections.base import ActiveStage
 from .solve import FLAT, PEAK, PROGRAMME, Solution
 from .stages import Stage
 
@@ -18,7 +19,8 @@ class LoudspeakerLoad:
 
     Watts into its nominal impedance, V²/Z: `average_w` of the programme, `peak_w` the largest instantaneous power
     (twice the sine-scaled peak's: the waveform's peak is sqrt(2) times the sine's rms). Margins are to the
-    continuous and the peak rating [dB], None where the rating is not given.
+    continuous and the peak rating [dB], None where the rating is not given. `damping` is its impedance over what it looks back into,
+    line and amplifier together; None where nothing drives it.
     """
 
     stage: str
@@ -28,11 +30,13 @@ class LoudspeakerLoad:
     peak_w: float
     continuous_margin_db: float | None
     peak_margin_db: float | None
+    damping: float | None = None
 
 
 def loudspeaker_loads(plan: Plan, solution: Solution, setting: int = 0) -> tuple[LoudspeakerLoad, ...]:
     """Every loudspeaker driven by an amplifier, in signal order."""
     found = []
+    damping = _damping(plan)
     for stage in loudspeakers_of(plan):
         values = stage.values()
         row = plan.input_row(stage.id)
@@ -43,9 +47,29 @@ def loudspeaker_loads(plan: Plan, solution: Solution, setting: int = 0) -> tuple
             LoudspeakerLoad(
                 stage.id, stage.name, float(np.sqrt(programme)), float(average), float(largest),
                 _margin(stage.rated_w(values, "continuous"), average), _margin(stage.rated_w(values, "peak"), largest),
+                damping.get(stage.id),
             )
         )  # fmt: skip
     return tuple(found)
+
+
+def _damping(plan: Plan) -> dict[str, float]:
+    """Load impedance over source impedance at each loudspeaker's terminals, at the test tone (IEC 60268-3, damping factor)."""
+    ends = {stage.id for stage in loudspeakers_of(plan)}
+    found: dict[str, float] = {}
+    for net in plan.layout.nets:
+        if not net.shape.drivers or not ends & net.shape.stages:
+            continue
+        solved = net.shape.with_numbers(plan.answers, plan.project.header.temperature_k)
+        for stage, port, node in net.shape.loads:
+            if stage in ends:
+                answer = plan.answers[stage]
+                assert isinstance(answer, ActiveStage)
+                own = 1.0 / np.asarray(answer.inputs[port].z_ohm, dtype=complex)
+                seen = np.abs(np.asarray(solved.at(node)) - own).ravel()[-1]
+                if seen > 0.0:
+                    found[stage] = float(seen / np.abs(own).ravel()[-1])
+    return found
 
 
 def loudspeakers_of(plan: Plan) -> Iterator[Stage]:

@@ -60,14 +60,12 @@ def _forced_upstream(outcome: Outcome, amplifier: str) -> str:
     words = (
         f" It forces {low[0]}" + (f" and {len(low) - 1} more" if len(low) > 1 else "") + "." if low else ""
     )
-    seats = [
-        seat for seat in outcome.seats if seat.budget and amplifier in project.topology.sources_of(seat.stage)
-    ]
-    if seats:
-        behind = {amplifier, *project.topology.fed_by(amplifier)}
-        ahead = sum(share.share for share in seats[0].budget if share.stage not in behind)
+    behind = {amplifier, *project.topology.fed_by(amplifier)}
+    seat = next((seat for seat in outcome.seats if seat.stage in behind and seat.budget), None)
+    if seat is not None:
+        ahead = sum(share.share for share in seat.budget if share.stage not in behind)
         if ahead > 0.5:
-            words += f" Stages ahead of it own {ahead * 100:.0f} % of the hiss at {seats[0].name}."
+            words += f" Stages ahead of it own {ahead * 100:.0f} % of the hiss at {seat.name}."
     return words
 
 

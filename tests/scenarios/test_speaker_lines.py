@@ -103,12 +103,13 @@ def test_s21_what_the_line_costs(area, z_ohm, loss_db):
 
 
 def test_s21_what_arrives_and_what_6_mm2_recover():
-    """S21: 69 % of the power, 33.2 V of 40; 6 mm² recover 0.91 dB into 4 ohm; loop resistance 0.826 and 0.344 ohm."""
+    """S21: 69 % of the power, 33.2 V of 40; 6 mm² recover 0.91 dB into 4 ohm; damping factor 4.8 and 11.6."""
     thin, thick = delay_line("2.5 mm²", "4 ohm"), delay_line("6 mm²", "4 ohm")
     assert thin.loudspeakers[0].volts == pytest.approx(33.2, rel=SHARE)
     assert thin.loudspeakers[0].average_w / (40.0**2 / 4.0) == pytest.approx(0.69, rel=SHARE)
     assert thick.node("box", "in").level - thin.node("box", "in").level == pytest.approx(0.91, abs=DB)
-    for outcome, ohm in ((thin, 0.826), (thick, 0.344)):
+    for outcome, ohm, damping in ((thin, 0.826, 4.8), (thick, 0.344, 11.6)):
+        assert outcome.loudspeakers[0].damping == pytest.approx(damping, rel=SHARE)
         cable = outcome.project.stage["cable"]
         assert cable.resistance_ohm(cable.values()) == pytest.approx(ohm, rel=SHARE)
 
