@@ -48,5 +48,7 @@ def acoustic_gain(
         if not value > 0.0:
             raise ValueError(f"{name} is {value:g}: it must be above nothing")
     needed = 20.0 * log10(talker_listener_m / equivalent_m)
-    raw = 20.0 * log10(microphone_loudspeaker_m * talker_listener_m / (loudspeaker_listener_m * talker_microphone_m))
+    raw = 20.0 * log10(
+        microphone_loudspeaker_m * talker_listener_m / (loudspeaker_listener_m * talker_microphone_m)
+    )
     return AcousticGain(float(needed), float(raw - 10.0 * log10(open_microphones) - feedback_margin_db))

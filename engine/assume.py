@@ -60,9 +60,7 @@ def assume(plan: Plan, sum_kind: int) -> Assumptions:
     ends, columns = [], []
     for side in ("low", "high"):
         overrides: dict[str, Values] = {
-            key: item.values(side)
-            for key, item in plan.project.items()
-            if key in keys
+            key: item.values(side) for key, item in plan.project.items() if key in keys
         }
         end = build_plan(plan.project, plan.axis, overrides=overrides)
         solution = solve(end.graph, end.rows, end.axis)

@@ -24,7 +24,9 @@ HOUR_S = 3600.0
 CRITERIA: tuple[Criterion, ...] = (
     Criterion("NIOSH 1998", 85.0, 8 * HOUR_S, 3.0, "NIOSH publication 98-126"),
     Criterion("OSHA 1910.95", 90.0, 8 * HOUR_S, 5.0, "29 CFR 1910.95 table G-16"),
-    Criterion("WHO venues 2022", 100.0, 900.0, 3.0, "WHO global standard for safe listening venues, LAeq 15 min"),
+    Criterion(
+        "WHO venues 2022", 100.0, 900.0, 3.0, "WHO global standard for safe listening venues, LAeq 15 min"
+    ),
     Criterion("DIN 15905-5", 99.0, 1800.0, 3.0, "DIN 15905-5, LAr 30 min"),
 )
 

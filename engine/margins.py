@@ -103,7 +103,9 @@ def _carried(graph: Graph, rows: Rows, peak: Array) -> Array:
             carried[at][is_pair[at]] = np.inf
         at = rank.joins
         if at.stop > at.start:
-            carried[at] = _at_join(carried[rank.join_parents], peak[rank.join_parents], peak[at], rank.join_starts)
+            carried[at] = _at_join(
+                carried[rank.join_parents], peak[rank.join_parents], peak[at], rank.join_starts
+            )
             carried[at][is_pair[at]] = np.inf
     return carried
 

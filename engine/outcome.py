@@ -27,6 +27,7 @@ from .levels import (
 from .limits import LimiterThreshold, limiter_thresholds
 from .loudspeaker import LoudspeakerLoad, loudspeaker_loads
 from .margins import Margins, find_margins
+from .meters import MeterReading, meter_readings
 from .paths import path_through, paths
 from .project import Project, difference
 from .rows import Array
@@ -126,6 +127,17 @@ class Outcome:
     def limiters(self) -> tuple[LimiterThreshold, ...]:
         """Every limiter ahead of every loudspeaker, with the threshold that protects it."""
         return limiter_thresholds(self.plan)
+
+    @cached_property
+    def meters(self) -> tuple[MeterReading, ...]:
+        """What every meter of the project shows, for the test tone and for programme."""
+        return meter_readings(self.plan, self.solution)
+
+    @property
+    def loudest(self) -> SeatLevels | None:
+        """The seat with the highest A-weighted level; None where nothing sounds."""
+        heard = [seat for seat in self.seats if seat.level_a is not None]
+        return max(heard, key=lambda seat: seat.level_a or 0.0, default=None)
 
     @cached_property
     def narrowest(self) -> Narrowest | None:

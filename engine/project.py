@@ -10,6 +10,7 @@ from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, SerializeAsA
 
 from engine import stages as kinds
 from engine.bands import SHARP_POINTS_PER_BAND, USUAL_POINTS_PER_BAND, Axis, make_axis
+from engine.exposure import CRITERIA, Criterion
 from engine.figures import Figure, parse
 from engine.stages import Declared, Stage
 from engine.stages.declare import figure, option
@@ -74,6 +75,36 @@ class Header(Declared):
     reserve_db: Figure = figure(
         "Wanted reserve", "level_db", "6 dB", help="Peak margins above this count as equal in a proposal."
     )
+
+    exposure: Literal["NIOSH 1998", "OSHA 1910.95", "WHO venues 2022", "DIN 15905-5", "own"] = option(
+        "Exposure criterion",
+        "NIOSH 1998",
+        choices=("NIOSH 1998", "OSHA 1910.95", "WHO venues 2022", "DIN 15905-5", "own"),
+        help="What the loudest seat's level is held against. Local law and the venue's licence set the limit.",
+    )
+    own_level_dba: Figure = figure("Own limit", "spl", "99 dB(A)", help="Level of your own criterion.")
+    own_time_s: Figure = figure(
+        "for", "time", "30 min", help="Time your own criterion permits at that level."
+    )
+    own_exchange_db: Figure = figure("Exchange rate", "level_db", "3 dB", help="How many dB halve the time.")
+
+    def in_use(self, name: str) -> bool:
+        return name not in ("own_level_dba", "own_time_s", "own_exchange_db") or self.exposure == "own"
+
+    @property
+    def criterion(self) -> Criterion:
+        """The exposure criterion the person picked."""
+        if self.exposure != "own":
+            return next(each for each in CRITERIA if each.name == self.exposure)
+        level, time, exchange = (
+            parse(given.text, quantity).amount
+            for given, quantity in (
+                (self.own_level_dba, "spl"),
+                (self.own_time_s, "time"),
+                (self.own_exchange_db, "level_db"),
+            )
+        )
+        return Criterion("own limit", level, time, exchange, "the person's own")
 
     @property
     def called(self) -> str:

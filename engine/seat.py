@@ -8,9 +8,11 @@ from functools import cached_property
 
 import numpy as np
 
+from .acoustic_gain import AcousticGain, acoustic_gain
 from .ambient import Ambient, hiss_margin, make_ambient
 from .budget import Share, contributions, shares
 from .compile import Plan
+from .exposure import permitted_s
 from .figures import parse
 from .levels import ZERO_POWER
 from .rows import Array
@@ -53,6 +55,34 @@ class SeatLevels:
     def off_target(self) -> float | None:
         """Level less target [dB]; None without either."""
         return None if self.level is None or self.target is None else self.level - self.target
+
+    @property
+    def permitted_s(self) -> float | None:
+        """How long the project's exposure criterion permits this level [s]; an estimate, local rules govern."""
+        return None if self.level_a is None else permitted_s(self.level_a, self.plan.project.header.criterion)
+
+    @cached_property
+    def acoustic_gain(self) -> AcousticGain | None:
+        """Needed and potential acoustic gain, where the seat's distances are given."""
+        stage = self.plan.project.stage[self.stage]
+        values = stage.values()
+        names = ("talker_m", "equivalent_m", "microphone_loudspeaker_m", "talker_microphone_m")
+        if any(name not in values for name in names):
+            return None
+        nearest = [
+            link.values()["distance_m"]
+            for link in self.plan.project.topology.into[self.stage]
+            if link.distance_m
+        ]
+        if not nearest:
+            return None
+        given = {name: float(np.mean(values[name])) for name in names}
+        return acoustic_gain(
+            talker_listener_m=given["talker_m"], microphone_loudspeaker_m=given["microphone_loudspeaker_m"],
+            loudspeaker_listener_m=float(min(np.mean(each) for each in nearest)),
+            talker_microphone_m=given["talker_microphone_m"], equivalent_m=given["equivalent_m"],
+            open_microphones=float(np.mean(values["open_microphones"])), feedback_margin_db=float(np.mean(values["feedback_margin_db"])),
+        )  # fmt: skip
 
     @cached_property
     def budget(self) -> tuple[Share, ...]:

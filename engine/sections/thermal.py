@@ -55,7 +55,9 @@ class Thermal:
         here, there = self._at(edge, one), self._at(edge, other)
         if inside is None:
             return self._together(edge, here, there)
-        if self._shared(edge) is None:  # members alike that hang on nothing together hear nothing of one another
+        if (
+            self._shared(edge) is None
+        ):  # members alike that hang on nothing together hear nothing of one another
             return 0.0 if unlike else self._together(edge, here, there)
         count = self.size[inside]
         is_in, other_in = self.group[one] == inside, self.group[other] == inside

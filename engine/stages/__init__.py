@@ -6,7 +6,7 @@ import importlib
 import pkgutil
 from collections.abc import Mapping
 
-from .base import Limiter, Port, Stage
+from .base import Limiter, Meter, Port, Stage
 from .declare import ControlRange, ControlSpec, FigureSpec, OptionSpec, Setting
 from .declared import Declared, Values
 
@@ -17,6 +17,7 @@ __all__ = [
     "Declared",
     "FigureSpec",
     "Limiter",
+    "Meter",
     "OptionSpec",
     "Port",
     "Setting",

@@ -43,6 +43,15 @@ class Limiter:
     is_in: bool
 
 
+@dataclass(frozen=True)
+class Meter:
+    """A meter at a stage's output: its sort (one of engine.meters.KINDS) and the level of a sine that reads 0, in `unit`."""
+
+    sort: str
+    zero: float
+    unit: str
+
+
 class Stage(Declared):
     """One block of the path. Frozen; unknown fields are kept through a round trip."""
 
@@ -99,6 +108,10 @@ class Stage(Declared):
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         """Reasons why these figures cannot be true together; each becomes a refusal when typed."""
         return iter(())
+
+    def meter(self, values: Values) -> Meter | None:
+        """The meter at this stage's output, if it has one."""
+        return None
 
     def limiters(self) -> tuple[Limiter, ...]:
         """The limiters of this stage, in signal order."""

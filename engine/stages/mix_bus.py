@@ -11,8 +11,9 @@ from engine.bands import Axis
 from engine.figures import Figure
 from engine.sections.attenuator import is_on, position_gain
 from engine.sections.base import Active, ActiveStage, Input, Output, StageSections
+from engine.units import dbu_from_v
 
-from .base import Port, Stage
+from .base import Meter, Port, Stage
 from .declare import Setting, control, figure, option, switch
 from .declared import Values
 from .shared import (
@@ -80,7 +81,7 @@ class MixBus(Stage):
         help="How programmes add. By origin: what comes from one source adds as voltage, unlike sources as power. Coherent: all as "
         "voltage. Power: all as power.",
     )  # fmt: skip
-    meter: Literal["none", "VU", "quasi-peak", "sample peak"] = option(
+    meter_sort: Literal["none", "VU", "quasi-peak", "sample peak"] = option(
         "Meter",
         "VU",
         choices=("none", "VU", "quasi-peak", "sample peak"),
@@ -125,6 +126,13 @@ class MixBus(Stage):
             {"out": Output("fader", z_out, self.form), "before_fader": Output("sum", z_out, self.form)},
             join=JOINS[self.adds],
         )  # fmt: skip
+
+    def meter(self, values: Values) -> Meter | None:
+        if self.meter_sort == "none":
+            return None
+        if self.signal == "digital":
+            return Meter(self.meter_sort, float(np.mean(values["meter_zero_dbfs"])), "dBFS")
+        return Meter(self.meter_sort, float(np.mean(dbu_from_v(values["meter_zero_v"]))), "dBu")
 
     def check(self, values: Values, axis: Axis) -> Iterator[str]:
         yield from nominal_above_maximum(self.name, values, "max_output_v")

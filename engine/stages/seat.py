@@ -67,10 +67,33 @@ class Seat(Stage):
         help="Usually as power. Coherent: as pressure, for loudspeakers close together and equally far.",
     )  # fmt: skip
 
+    talker_m: Figure | None = figure(
+        "Talker to this seat", "length", help="For acoustic gain: how far the talker is from this listener."
+    )
+    equivalent_m: Figure | None = figure(
+        "Should sound as near as",
+        "length",
+        help="Equivalent acoustic distance: how near the talker should seem.",
+    )
+    microphone_loudspeaker_m: Figure | None = figure(
+        "Microphone to loudspeaker",
+        "length",
+        help="From the open microphone to the nearest loudspeaker it may hear.",
+    )
+    talker_microphone_m: Figure | None = figure(
+        "Talker to microphone", "length", help="0.3 m at a lectern, 0.05 m hand-held, 0.6 m on a table."
+    )
+    open_microphones: Figure = figure("Open microphones", "count", "1", help="How many are open at once.")
+    feedback_margin_db: Figure = figure(
+        "Feedback margin", "level_db", "6 dB", help="Kept free against ringing; 6 dB is usual."
+    )
+
     def inputs(self) -> tuple[Port, ...]:
         return (Port("in", Domain.ACOUSTIC, many=True),)
 
     def in_use(self, name: str) -> bool:
+        if name in ("open_microphones", "feedback_margin_db"):
+            return self.talker_m is not None
         return name not in ("volume_m3", "rt60_s", "room_constant_m2") or self.field_kind == "room"
 
     def arrival(self, values: Values, link: Values, reference_m: Number | None, axis: Axis) -> Number:

@@ -11,7 +11,15 @@ from engine.stages import Stage, template
 
 
 def chain(key: str, nominal: str, most: str) -> tuple[list[Stage], list[Link]]:
-    source = template("line_source", key, key, column=0, row=0, nominal_v=Figure(text=nominal), max_output_v=Figure(text=most))
+    source = template(
+        "line_source",
+        key,
+        key,
+        column=0,
+        row=0,
+        nominal_v=Figure(text=nominal),
+        max_output_v=Figure(text=most),
+    )
     return [source], [Link(id=f"{key}-bus", source=key, target="bus")]
 
 
