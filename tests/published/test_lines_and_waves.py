@@ -47,6 +47,6 @@ def test_crest_factors(name):
     """
     wave, crest_db = WAVES[name]
     measured = 20.0 * np.log10(np.max(np.abs(wave)) / np.sqrt(np.mean(wave**2)))
-    assert measured == pytest.approx(crest_db, abs=0.02)
+    assert measured == pytest.approx(crest_db, abs=0.05)
     outcome = solved(line("out", "+4 dBu", crest=f"{crest_db:.4f} dB"), bare("feed", "in"))
     assert outcome.node("out", "out").peak == pytest.approx(4.0 + crest_db - 3.0103, abs=1e-3)
