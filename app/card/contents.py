@@ -9,6 +9,7 @@ from typing import Literal
 from engine.project import HEADER_KEY, Link, Project
 from engine.sections.base import Domain
 from engine.stages import Stage
+from engine.stages.declare import FigureSpec
 from engine.stages.declared import Declared
 
 Sort = Literal["project", "stages", "links", "mixed"]
@@ -57,7 +58,7 @@ def _stages(project: Project, stages: list[Stage], opened: Collection[tuple[str,
         if all(
             (other := each.control_specs().get(name)) is not None
             and each.in_use(name)
-            and (other.label, other.unit) == (spec.label, spec.unit)
+            and other.unit == spec.unit
             and _names(each, name) == _names(first, name)
             for each in stages[1:]
         )
@@ -91,12 +92,17 @@ def _declared(
         name
         for name, spec in first.option_specs().items()
         if first.in_use(name)
-        and all(each.option_specs().get(name) == spec and each.in_use(name) for each in rest)
+        and all(
+            (other := each.option_specs().get(name)) is not None
+            and (other.choices, other.low, other.high) == (spec.choices, spec.low, spec.high)
+            and each.in_use(name)
+            for each in rest
+        )
     )
     figures: list[str] = []
     absent: list[str] = []
     for name, spec in first.figure_specs().items():
-        if not all(each.figure_specs().get(name) == spec and each.in_use(name) for each in items):
+        if not all(_asks(each, name, spec) for each in items):
             continue
         if spec.many:
             if not rest:
@@ -109,6 +115,12 @@ def _declared(
         else:
             absent.append(name)
     return Contents(sort, keys, (), options=options, figures=tuple(figures), absent=tuple(absent))
+
+
+def _asks(item: Declared, name: str, spec: FigureSpec) -> bool:
+    """Whether an item asks for the same figure, whatever its help and usual value."""
+    own = item.figure_specs().get(name)
+    return own is not None and (own.quantity, own.many) == (spec.quantity, spec.many) and item.in_use(name)
 
 
 def domain_of(project: Project, link: Link) -> Domain:

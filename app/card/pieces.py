@@ -134,12 +134,14 @@ def card_sheet(inks: Inks) -> str:
     return f"""
 QPushButton[word] {{ border-color: transparent; padding: 0 4px; margin: 0 -4px 0 0; min-height: 18px; }}
 QPushButton[word="quiet"] {{ color: {inks.muted.name()}; }}
-QPushButton[word="strong"] {{ color: {inks.accent.name()}; }}
+QPushButton[word="strong"] {{ color: {inks.accent.name()}; margin: 0 0 0 -5px; }}
 QPushButton[word]:focus {{ border-color: {inks.accent.name()}; }}
 QPushButton[segment="true"] {{ padding: 0 4px; }}
 QLineEdit[bare="true"] {{ background: transparent; border-color: transparent; padding: 0; }}
 QLineEdit[title="true"] {{ margin-left: -3px; }}
 QLineEdit[value="true"] {{ margin-right: -4px; }}
+QLineEdit[title="true"]:hover, QLineEdit[title="true"]:focus, QLineEdit[title="true"][wrong="true"] {{ margin-left: 0; }}
+QLineEdit[value="true"]:hover, QLineEdit[value="true"]:focus, QLineEdit[value="true"][wrong="true"] {{ margin-right: 0; }}
 QLineEdit[bare="true"]:hover {{ border-color: {inks.hairline.name()}; }}
 QLineEdit[bare="true"]:focus {{ background: {inks.raised.name()}; border-color: {inks.accent.name()}; }}
 QLineEdit[bare="true"][wrong="true"] {{ border-color: {inks.stop.name()}; }}
