@@ -100,9 +100,14 @@ def test_without_findings_it_says_so(qtbot):
 
 def test_while_a_hand_moves_it_follows_only_now_and_then(shown, qtbot):
     document = shown.document_
-    reads = []
+    reads: list[object] = []
     show = shown.model.show_findings
-    shown.model.show_findings = lambda found: (reads.append(1), show(found))
+
+    def counted(found) -> None:
+        reads.append(found)
+        show(found)
+
+    shown.model.show_findings = counted
     for step in range(20):
         stage = document.project.stage["preamplifier-2"]
         document.edit("Up", {stage.id: (stage, stage.with_control("gain_db", 20.0 + step))}, gesture="hand")

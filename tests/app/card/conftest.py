@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import pytest
-from PySide6.QtWidgets import QApplication, QWidget
+from PySide6.QtWidgets import QApplication
 
 from app import style
 from app.card import StageCard
@@ -37,7 +39,7 @@ class Bench:
     def stage(self, kind: str):
         return self.document.project.stage[self.key(kind)]
 
-    def row(self, name: str) -> QWidget:
+    def row(self, name: str) -> Any:
         return next(row for row in self.card.pane.rows if getattr(row, "name", None) == name)
 
     def control(self, name: str) -> ControlRow:
