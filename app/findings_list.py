@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import time
 from collections.abc import Callable
 
 from PySide6.QtCore import QAbstractListModel, QModelIndex, QPersistentModelIndex, Qt, QTimer, Signal
@@ -16,7 +15,7 @@ from .finding_delegate import FINDING, FindingDelegate
 from .inks import Inks, font
 from .style import PADDING_PX
 
-REST_MS = 150  # while a hand moves the list follows in this rhythm
+REST_MS = 150  # a hand that keeps still as long is looked at
 EMPTY = "Nothing to mend."
 Index = QModelIndex | QPersistentModelIndex
 
@@ -46,7 +45,6 @@ class FindingsList(QWidget):
         body.addWidget(self.view, 1)
         self.setMinimumHeight(80)
         self.setFocusProxy(self.view)
-        self._last_s = 0.0
         self._rest = QTimer(self, singleShot=True, interval=REST_MS)
         self._rest.timeout.connect(self._show)
         self.view.clicked.connect(self._go)
@@ -59,16 +57,14 @@ class FindingsList(QWidget):
         self.view.set_inks(inks)
 
     def _solved(self, _outcome: object) -> None:
-        """While a hand moves, only now and then: reading findings costs more than a frame has to spare."""
-        is_soon = time.monotonic() - self._last_s < REST_MS / 1000.0
-        if not self._document.gesture_open or not is_soon:
-            self._show()
-        elif not self._rest.isActive():
+        """While a hand moves they wait until it rests: reading them costs more than a frame has to spare."""
+        if self._document.gesture_open:
             self._rest.start()
+        else:
+            self._show()
 
     def _show(self) -> None:
         self._rest.stop()
-        self._last_s = time.monotonic()
         found = self._document.outcome.findings
         self.view.keep_current(lambda: self.model.show_findings(found))
         counts = ((sum(each.severity == word for each in found), word) for word in ("stop", "mend", "note"))

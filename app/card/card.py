@@ -39,6 +39,7 @@ class StageCard(QWidget):
         self.area.setWidgetResizable(True)
         self.area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.area.viewport().setFocusProxy(None)  # it would hand the keyboard to the area nevertheless
         self.area.verticalScrollBar().valueChanged.connect(lambda _value: self._gate.scrolled())
         body = QVBoxLayout(self)
         body.setContentsMargins(0, 0, 0, 0)
@@ -64,7 +65,8 @@ class StageCard(QWidget):
 
     # -- following -------------------------------------------------------------------------------------------
     def _changed(self, _changes: Mapping[str, object]) -> None:
-        if self._wanted() != self._contents():
+        moving = self.document.gesture_open  # a hand moves values only
+        if not moving and self._wanted() != self._contents():
             self._soon.start()
         elif self.pane is not None:
             self.pane.show_project(self.document.project)
@@ -105,6 +107,7 @@ class StageCard(QWidget):
         if self.document.outcome.project.same_as(self.document.project):
             self.pane.show_outcome(self.document.outcome)
         self.area.setWidget(self.pane)
+        self.setFocusProxy(self.pane.first)
         self.area.verticalScrollBar().setValue(scrolled)
         self._restore(kept)
 

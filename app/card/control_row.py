@@ -37,6 +37,7 @@ class ControlRow(Part):
         super().__init__()
         self.scene, self.keys, self.name = scene, keys, name
         spec, ranged = self._declared()
+        self._seen: tuple[ControlRange, list[Setting]] | None = None
         self.label = Elided(spec.label)
         self.label.set_help(spec.help)
         self.value = Entry(f"{spec.label}, value", bare=True, strong=True)
@@ -92,6 +93,9 @@ class ControlRow(Part):
     def show_project(self, project: Project) -> None:
         spec, ranged = self._declared()
         settings = self._settings()
+        if self._seen == (ranged, settings):
+            return
+        self._seen = (ranged, settings)
         first = settings[0]
         agree = all(each.value == first.value for each in settings)
         text = panel.position(spec, ranged, first) if agree else SEVERAL
@@ -141,6 +145,7 @@ class ControlRow(Part):
     def _choose(self, place: int) -> None:
         _, ranged = self._declared()
         self.said.say(self._move(ranged.choices[place][1]))
+        self._seen = None  # a refused choice leaves the pressed button where it was
         self.show_project(self.scene.project)
 
     def _begin_typing(self, text: str) -> None:

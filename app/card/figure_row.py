@@ -33,6 +33,7 @@ class FigureRow(Part):
         super().__init__()
         self.scene, self.keys, self.name = scene, keys, name
         self.spec = self._spec()
+        self._seen: Sequence[Figure | None] | None = None
         self.label = Elided(label or self._label(), 11, quiet=True)
         self.label.set_help(self.spec.help)
         self.field = Entry(self.label.text())
@@ -77,6 +78,9 @@ class FigureRow(Part):
     # -- what it shows ---------------------------------------------------------------------------------------
     def show_project(self, project: Project) -> None:
         given = self._figures()
+        if self._seen is not None and all(new is old for new, old in zip(given, self._seen, strict=True)):
+            return  # a stage that changed elsewhere keeps its other figures, the very same
+        self._seen = given
         texts = {figure.text if figure else "" for figure in given}
         self.field.show_value(texts.pop() if len(texts) == 1 else SEVERAL)
         if not self.field.is_wrong and not self.field.is_dirty:

@@ -43,6 +43,11 @@ class Pane(QWidget):
             contents.sort
         ]()
         self._body.addStretch(1)
+        #: What the keyboard comes to first: a control where there is one, else what stands topmost.
+        takes = [part for part in self.rows if part.focusProxy() is not None]
+        self.first: Part | None = next(
+            (part for part in takes if isinstance(part, ControlRow)), next(iter(takes), None)
+        )
 
     def show_project(self, project: Project) -> None:
         """Follow a change that leaves the rows what they are."""
