@@ -23,7 +23,7 @@ class CommandError(Exception):
 class Arguments(argparse.ArgumentParser):
     """Arguments of one command, with the project file first. Raises `CommandError` instead of leaving the program."""
 
-    def __init__(self, command: str, description: str, more: str = "") -> None:
+    def __init__(self, command: str, description: str, more: str = "", *, file: bool = True) -> None:
         super().__init__(
             prog=f"gainwright {command}",
             description=description,
@@ -31,7 +31,8 @@ class Arguments(argparse.ArgumentParser):
             formatter_class=argparse.RawDescriptionHelpFormatter,
             allow_abbrev=False,
         )
-        self.add_argument("file", metavar="FILE", type=Path, help="the project, a .gainwright file")
+        if file:
+            self.add_argument("file", metavar="FILE", type=Path, help="the project, a .gainwright file")
 
     def error(self, message: str) -> NoReturn:
         raise CommandError(f"{message}\n{self.format_usage().rstrip()}")
