@@ -69,6 +69,10 @@ class Side(QWidget):
     def _shared_by_hand(self) -> None:
         self.shared_out = True
 
+    def set_touch(self, on: bool) -> None:
+        """Make everything large enough for fingers, or not."""
+        self.card.set_touch(on)
+
     def set_inks(self, inks: Inks) -> None:
         """Show in other colours."""
         self._inks = inks

@@ -196,6 +196,7 @@ class MainWindow(QMainWindow):
         self._touch = on
         self.memory.put("density", "touch" if on else "pointer")
         self.shelf.set_touch(on)
+        self.side.set_touch(on)
         self._dress()
 
     def _dress(self) -> None:

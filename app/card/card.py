@@ -33,13 +33,14 @@ class StageCard(QWidget):
         self._soon = QTimer(self, singleShot=True, interval=0)
         self._soon.timeout.connect(self._build)
         self._scene = Scene(document, inks, Hand(document), self._gate.is_open, self._soon.start)
+        self._touch = False
         self.builds = 0  # counted for the tests
         self.pane: Pane | None = None
         self.area = QScrollArea()
         self.area.setWidgetResizable(True)
         self.area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self.area.viewport().setFocusProxy(None)  # it would hand the keyboard to the area nevertheless
+        self.area.viewport().setFocusProxy(None)  # type: ignore[arg-type]  # it would hand the keyboard to the area nevertheless
         self.area.verticalScrollBar().valueChanged.connect(lambda _value: self._gate.scrolled())
         body = QVBoxLayout(self)
         body.setContentsMargins(0, 0, 0, 0)
@@ -60,8 +61,13 @@ class StageCard(QWidget):
     def set_inks(self, inks: Inks) -> None:
         """Show in other colours."""
         self._scene.inks = inks
-        self.setStyleSheet(card_sheet(inks))
+        self.setStyleSheet(card_sheet(inks, touch=self._touch))
         self._build()
+
+    def set_touch(self, on: bool) -> None:
+        """Make everything large enough for fingers, or not."""
+        self._touch = on
+        self.set_inks(self._scene.inks)
 
     # -- following -------------------------------------------------------------------------------------------
     def _changed(self, _changes: Mapping[str, object]) -> None:
@@ -107,7 +113,7 @@ class StageCard(QWidget):
         if self.document.outcome.project.same_as(self.document.project):
             self.pane.show_outcome(self.document.outcome)
         self.area.setWidget(self.pane)
-        self.setFocusProxy(self.pane.first)
+        self.setFocusProxy(self.pane.first)  # type: ignore[arg-type]  # None is none
         self.area.verticalScrollBar().setValue(scrolled)
         self._restore(kept)
 

@@ -129,10 +129,11 @@ def tip(text: str) -> str:
     return _tip(text)
 
 
-def card_sheet(inks: Inks) -> str:
-    """What the card adds to the application's style sheet."""
+def card_sheet(inks: Inks, *, touch: bool = False) -> str:
+    """What the card adds to the application's style sheet; fingers need its words as high as rows."""
+    small_px = 40 if touch else 18
     return f"""
-QPushButton[word] {{ border-color: transparent; padding: 0 4px; margin: 0 -4px 0 0; min-height: 18px; }}
+QPushButton[word] {{ border-color: transparent; padding: 0 4px; margin: 0 -4px 0 0; min-height: {small_px}px; }}
 QPushButton[word="quiet"] {{ color: {inks.muted.name()}; }}
 QPushButton[word="strong"] {{ color: {inks.accent.name()}; margin: 0 0 0 -5px; }}
 QPushButton[word]:focus {{ border-color: {inks.accent.name()}; }}
@@ -146,6 +147,6 @@ QLineEdit[bare="true"]:hover {{ border-color: {inks.hairline.name()}; }}
 QLineEdit[bare="true"]:focus {{ background: {inks.raised.name()}; border-color: {inks.accent.name()}; }}
 QLineEdit[bare="true"][wrong="true"] {{ border-color: {inks.stop.name()}; }}
 QComboBox {{ padding-left: 8px; }}
-QLineEdit[small="true"] {{ min-height: 18px; }}
+QLineEdit[small="true"] {{ min-height: {small_px}px; }}
 QScrollArea, QWidget#card {{ background: {inks.paper.name()}; border: none; }}
 """
