@@ -69,8 +69,9 @@ class ControlRow(Part):
             body.addWidget(self.slider)
             body.addLayout(row(foot, self.panel, self.state, stretch=1, spacing=4))
         else:
-            self.value.hide()
-            self.slider.hide()
+            for unused in (self.value, self.slider):  # a child all the same, or it would outlive the row
+                unused.setParent(self)
+                unused.hide()
             body.addLayout(row(self.label, self.state))
             body.addWidget(self.switch)
             body.addLayout(row(foot, self.panel, stretch=1, spacing=4))
