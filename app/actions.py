@@ -59,6 +59,13 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
     add("diagram", "Save level dia&gram…", "Ctrl+E", window.write_diagram)
     add("preview", "Pre&view sheets…", "Ctrl+Shift+P", exports.preview_sheets)
     add("print", "&Print…", "Ctrl+P", exports.print_sheets, "Print the level diagram and the sheets")
+    add(
+        "recording",
+        "Read a &recording…",
+        "Ctrl+R",
+        window.recordings.choose,
+        "Look at the show's own programme, and use it",
+    )
     add("venue", "&Venue and conditions…", "F4", window.edit_venue)
     add("quit", "&Quit", "Ctrl+Q", window.close)
 

@@ -34,6 +34,9 @@ class Ask(Protocol):
     def open_path(self, folder: Path) -> Path | None:
         """Which project to open."""
 
+    def open_file(self, title: str, folder: Path, kinds: Sequence[str]) -> Path | None:
+        """Which other file to read. `kinds` are file dialogs' filters."""
+
     def save_path(self, title: str, suggested: Path, kinds: Sequence[str]) -> Path | None:
         """Where to save. `kinds` are file dialogs' filters, the usual one first."""
 
@@ -73,6 +76,10 @@ class Dialogs:
         box = self._box(title, title)
         box.setInformativeText(text)
         _answer(box, box.addButton("OK", QMessageBox.ButtonRole.AcceptRole))
+
+    def open_file(self, title: str, folder: Path, kinds: Sequence[str]) -> Path | None:
+        name, _ = QFileDialog.getOpenFileName(self.parent, title, str(folder), ";;".join(kinds))
+        return Path(name) if name else None
 
     def open_path(self, folder: Path) -> Path | None:
         name, _ = QFileDialog.getOpenFileName(self.parent, "Open a project", str(folder), PROJECTS)

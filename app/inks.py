@@ -49,14 +49,15 @@ class Inks:
         return {"stop": self.stop, "mend": self.mend, "note": self.note}[word]
 
 
-def _scheme(name: str, *colours: str) -> Inks:
-    return Inks(name, *(QColor(f"#{colour}") for colour in colours))
+def _scheme(name: str, colours: str) -> Inks:
+    """Colours in the order of the fields, paper first."""
+    return Inks(name, *(QColor(f"#{colour}") for colour in colours.split()))
 
 
-LIGHT = _scheme("light", "FBFAF7", "FFFFFF", "DEDAD2", "1F2328", "5C616A", "0B6E75", "C23B22", "8F5B06", "1B4F9C", "6B5B95")
-DARK = _scheme("dark", "16181C", "1F2227", "343941", "E8E6E1", "A0A4AB", "4FC1C7", "FF7A5C", "E8B04A", "7FB2FF", "B9A6E8")
-RED = _scheme("red light", "0A0000", "160303", "4A1010", "FF6A5A", "C74B40", "FF8A70", "FF6A5A", "FF6A5A", "FF6A5A", "C74B40")
-PRINT = _scheme("print", "FFFFFF", "FFFFFF", "B0B0B0", "000000", "000000", "000000", "000000", "000000", "000000", "000000")
+LIGHT = _scheme("light", "FBFAF7 FFFFFF DEDAD2 1F2328 5C616A 0B6E75 C23B22 8F5B06 1B4F9C 6B5B95")
+DARK = _scheme("dark", "16181C 1F2227 343941 E8E6E1 A0A4AB 4FC1C7 FF7A5C E8B04A 7FB2FF B9A6E8")
+RED = _scheme("red light", "0A0000 160303 4A1010 FF6A5A C74B40 FF8A70 FF6A5A FF6A5A FF6A5A C74B40")
+PRINT = _scheme("print", "FFFFFF FFFFFF B0B0B0 000000 000000 000000 000000 000000 000000 000000")
 SCHEMES: Mapping[str, Inks] = {inks.name: inks for inks in (LIGHT, DARK, RED)}
 
 
@@ -70,5 +71,6 @@ def font(size_px: int, *, strong: bool = False) -> QFont:
 
 def blend(ink: QColor, paper: QColor, share: float) -> QColor:
     """`share` of an ink on paper, opaque."""
-    mixed = (round(a * share + b * (1.0 - share)) for a, b in zip(ink.getRgb()[:3], paper.getRgb()[:3], strict=True))  # type: ignore[index]
+    ends = ((ink.red(), paper.red()), (ink.green(), paper.green()), (ink.blue(), paper.blue()))
+    mixed = (round(a * share + b * (1.0 - share)) for a, b in ends)
     return QColor(*mixed)

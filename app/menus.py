@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 MENUS: Mapping[str, tuple[str, ...]] = {
     "&File": (
         "new", "open", "=recent", "=samples", "-", "save", "save_as", "revert", "-",
-        "venue", "-", "preview", "print", "sheets_pdf", "diagram", "-", "quit",
+        "venue", "recording", "-", "preview", "print", "sheets_pdf", "diagram", "-", "quit",
     ),
     "&Edit": (
         "undo", "redo", "-", "cut", "copy", "paste", "duplicate", "delete", "select_all", "-",

@@ -26,6 +26,7 @@ from .inks import LIGHT, SCHEMES, Inks
 from .memory import Memory
 from .menus import build_menus
 from .notice import Notice
+from .recordings import Recordings
 from .recovery import Slot, orphans
 from .shelf import Shelf
 from .side import WIDTH_PX, Side
@@ -66,6 +67,7 @@ class MainWindow(QMainWindow):
         self.notice = Notice()
         self.files = Files(document, self.ask, self.memory, self)
         self.exports = Exports(document, self.ask, self)
+        self.recordings = Recordings(document, self.centre.path, self.ask, self)
         self.actions_: Mapping[str, QAction] = make_actions(self)
         self._arrange()
         self._connect()
@@ -231,7 +233,7 @@ class MainWindow(QMainWindow):
     def step_pane(self, step: int) -> None:
         """Take the keyboard to the next part of the window."""
         panes = self.panes()
-        focused = QApplication.focusWidget()
+        focused = self.focusWidget()  # also while the window is not the active one
         at = next(
             (n for n, pane in enumerate(panes) if focused is pane or _is_in(focused, pane)),
             -1 if step > 0 else 0,
@@ -319,6 +321,7 @@ class MainWindow(QMainWindow):
                 continue
             self.memory.put(f"splitter {name}", bytes(splitter.saveState().toBase64().data()).decode())
         self.files.close()
+        self.recordings.close()
         if self.keeper is not None:
             self.keeper.close()
             self.keeper = None
@@ -331,10 +334,8 @@ def _is_in(widget: QWidget | None, pane: QWidget) -> bool:
 
 def _take_focus(pane: QWidget) -> bool:
     """Give a part the keyboard, or the first thing in it that takes it."""
-    first = [pane, *pane.findChildren(QWidget)]
-    for widget in first:
-        takes = widget.focusPolicy() & Qt.FocusPolicy.TabFocus or widget.focusProxy() is not None
-        if takes and widget.isVisible() and widget.isEnabled():
+    for widget in (pane, *pane.findChildren(QWidget)):
+        if widget.focusPolicy() & Qt.FocusPolicy.TabFocus and widget.isVisible() and widget.isEnabled():
             widget.setFocus(Qt.FocusReason.TabFocusReason)
             return True
     return False
