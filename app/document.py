@@ -20,7 +20,6 @@ from engine.project import Changes, Project, difference
 from .fingerprint import fingerprint
 
 FRAME_MS = 16
-_GESTURE_ID = 1  # commands of one id are offered to `mergeWith`; -1 never is
 
 
 class Edit(QUndoCommand):
@@ -44,18 +43,15 @@ class Edit(QUndoCommand):
             document.end_gesture()
 
     def id(self) -> int:
-        return -1 if self.gesture is None else _GESTURE_ID
+        return -1  # never merged by the stack; said here too, or PySide keeps a reference to None each time it asks
 
-    def mergeWith(self, later: QUndoCommand) -> bool:
-        """Take in a later edit of the same gesture, keeping what was first before; back at the start: obsolete."""
-        if not isinstance(later, Edit) or later.gesture != self.gesture:
-            return False
-        for key, (before, after) in later.changes.items():
+    def take_in(self, changes: Changes) -> None:
+        """Add later changes of the same gesture, keeping what was first before; back at the start: obsolete."""
+        for key, (before, after) in changes.items():
             first = self.changes[key][0] if key in self.changes else before
             self.changes[key] = (first, after)
         self.changes = {key: pair for key, pair in self.changes.items() if pair[0] != pair[1]}
         self.setObsolete(not self.changes)
-        return True
 
 
 class Document(QObject):
@@ -82,6 +78,7 @@ class Document(QObject):
         self._tried: Outcome | None = None
         self._gesture_number = 0
         self._gesture_open = False
+        self._moving: Edit | None = None  # the undo entry of the open gesture
         self.undo_stack = QUndoStack(self)
         self._frame = QTimer(self, singleShot=True, interval=FRAME_MS)
         self._frame.timeout.connect(self._solve)
@@ -138,12 +135,22 @@ class Document(QObject):
             self._tried = evaluate(result)  # a ring of passive stages shows only here
         token = None if gesture is None else (gesture, self._gesture_number)
         self._gesture_open = gesture is not None
-        self.undo_stack.push(Edit(self, title, changes, token))
+        if self._moving is not None and token is not None and self._moving.gesture == token:
+            # Not pushed to be merged: PySide keeps every merged command, and a long drag would keep its projects.
+            self._moving.take_in(changes)
+            self._apply(changes)
+            if self._moving.isObsolete():
+                self._moving = None
+                self.undo_stack.undo()  # drops an obsolete entry without undoing it
+            return True
+        self._moving = None if token is None else Edit(self, title, changes, token)
+        self.undo_stack.push(self._moving or Edit(self, title, changes, token))
         return True
 
     def end_gesture(self) -> None:
         """The hand lets go: what follows is an undo entry of its own, and the last value is solved now."""
         was_open, self._gesture_open = self._gesture_open, False
+        self._moving = None
         self._gesture_number += 1
         if self._frame.isActive():
             self.flush()
@@ -219,6 +226,7 @@ class Document(QObject):
         self._tried = tried
         self._gesture_number += 1
         self._gesture_open = False
+        self._moving = None
         self.undo_stack.clear()
         self.select(())
         self._announce(project, difference(self._project, project))

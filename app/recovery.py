@@ -46,7 +46,7 @@ class Slot:
     def keep(self, project: Project, origin: Path | None) -> None:
         """Write the work down. Raises OSError; what was kept before then stands."""
         self._folder.mkdir(parents=True, exist_ok=True)
-        _origin_of(self._file).write_text(str(origin or ""), encoding="utf-8")
+        _note_origin(self._file, origin)
         store.write(self._file, project)
 
     def clear(self) -> None:
@@ -134,6 +134,15 @@ def _adopt(file: Path) -> Orphan | None:
         orphan.discard()
         return None
     return orphan
+
+
+def _note_origin(file: Path, origin: Path | None) -> None:
+    """Written beside and put in place whole, and only where it is another: a kill must not leave it empty."""
+    if _origin_of(file).exists() and _read_origin(file) == origin:
+        return
+    beside = file.with_name(f".{file.stem}.origin.part")
+    beside.write_text(str(origin or ""), encoding="utf-8")
+    beside.replace(_origin_of(file))
 
 
 def _read_origin(file: Path) -> Path | None:
