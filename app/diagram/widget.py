@@ -75,6 +75,7 @@ class DiagramView(QWidget):
     def set_inks(self, inks: Inks) -> None:
         """Draw in another scheme."""
         self.inks = inks
+        self._still = None
         self._rebuild()
 
     def set_unit(self, unit: Unit) -> None:
