@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from PySide6.QtCore import QEvent, Qt, Signal
-from PySide6.QtGui import QAction, QMouseEvent, QResizeEvent
+from PySide6.QtGui import QAction, QMouseEvent, QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QMenuBar, QSizePolicy, QToolButton, QWidget
 
 from engine.project import Header
@@ -70,6 +70,9 @@ class VenueLabel(QWidget):
         self._about.setFixedWidth(left)
 
 
+MENU_ITEM_PX = 22  # a menu title's padding
+
+
 class TopLine(QWidget):
     """Menus left, the venue beside them, a few actions right."""
 
@@ -87,6 +90,7 @@ class TopLine(QWidget):
         row = QHBoxLayout(self)
         row.setContentsMargins(8, 0, 12, 0)
         row.setSpacing(4)
+        self._bar = bar
         row.addWidget(bar, 0, Qt.AlignmentFlag.AlignVCenter)
         row.addSpacing(12)
         row.addWidget(self.venue, 1)
@@ -100,3 +104,12 @@ class TopLine(QWidget):
             button.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextOnly)
             button.setFocusPolicy(Qt.FocusPolicy.TabFocus)
             row.addWidget(button)
+
+    def showEvent(self, event: QShowEvent) -> None:
+        """A menu bar asked for its size in a narrow parent folds up; now it is asked in the real one."""
+        super().showEvent(event)
+        metrics = self._bar.fontMetrics()
+        titles = (action.text().replace("&", "") for action in self._bar.actions())
+        self._bar.setMinimumWidth(
+            sum(metrics.horizontalAdvance(title) + MENU_ITEM_PX for title in titles) + 24
+        )
