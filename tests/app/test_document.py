@@ -59,7 +59,7 @@ def slide(document: Document, value: float, gesture: object | None = "gain") -> 
 
 
 def gain(document: Document) -> float | None:
-    value: float | None = document.project.stage["pre"].gain_db.value  # type: ignore[attr-defined]
+    value: float | None = document.project.stage["pre"].gain_db.value
     return value
 
 
@@ -207,8 +207,8 @@ def test_changes_are_announced_in_the_direction_they_go(document):
     document.changed.connect(facts.append)
     document.undo()
     before, after = facts[0]["pre"]
-    assert before.gain_db.value == 41.0  # type: ignore[attr-defined]
-    assert after.gain_db.value == 40.0  # type: ignore[attr-defined]
+    assert before.gain_db.value == 41.0
+    assert after.gain_db.value == 40.0
 
 
 # -- modified ------------------------------------------------------------------------------------------------

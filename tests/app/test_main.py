@@ -31,7 +31,12 @@ def test_a_command_is_run(capsys):
 
 def test_any_other_word_is_a_file(monkeypatch):
     opened: list[Path | None] = []
-    monkeypatch.setattr(start, "run", lambda path: opened.append(path) or 0)
+
+    def run(path: Path | None) -> int:
+        opened.append(path)
+        return 0
+
+    monkeypatch.setattr(start, "run", run)
     assert main(["venue.gainwright"]) == 0
     assert main([]) == 0
     assert opened == [Path("venue.gainwright"), None]

@@ -35,7 +35,7 @@ def slide(document: Document, value: float) -> None:
 
 
 def gain(project: Project) -> float:
-    value: float = project.stage["pre"].gain_db.value  # type: ignore[attr-defined]
+    value: float = project.stage["pre"].gain_db.value
     return value
 
 

@@ -104,7 +104,7 @@ def test_an_empty_figure_that_has_a_typical_value_stays_empty():
     project = small()
     pre = project.stage["pre"].with_fields(pad_db=None)
     project = project.with_changes({"pre": (project.stage["pre"], pre)})
-    assert from_text(to_text(project))[0].stage["pre"].pad_db is None  # type: ignore[attr-defined]
+    assert from_text(to_text(project))[0].stage["pre"].pad_db is None
 
 
 def test_unknown_fields_are_kept_and_reported():
