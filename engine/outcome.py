@@ -144,20 +144,12 @@ class Outcome:
         """The first to clip; None where nothing does or nothing sounds."""
         at_in, at_out = self.margins.at_in_db[:, 0], self.margins.at_out_db[:, 0]
         own = np.minimum(at_in, at_out)
-        best: Narrowest | None = None
-        for stage in self.plan.answers:
-            for section, row in self.plan.section_list(stage):
-                if np.isfinite(own[row]) and (best is None or own[row] < best.margin_db):
-                    side = "in" if at_in[row] <= at_out[row] else "out"
-                    best = Narrowest(
-                        stage, self.project.stage[stage].name, section.name, side, float(own[row])
-                    )
-        for stage, row in self.plan.half_driven():
-            if np.isfinite(own[row]) and (best is None or own[row] < best.margin_db):
-                best = Narrowest(
-                    stage, self.project.stage[stage].name, "output, one leg", "out", float(own[row])
-                )
-        return best
+        row = int(np.argmin(own))
+        if not np.isfinite(own[row]):
+            return None
+        side = "in" if at_in[row] <= at_out[row] else "out"
+        stage, section = self.plan.owner_of(row)
+        return Narrowest(stage, self.project.stage[stage].name, section, side, float(own[row]))
 
     @cached_property
     def findings(self) -> tuple[Finding, ...]:

@@ -82,15 +82,24 @@ def place_labels(
     standing: list[Label] = []
     for wish in sorted(wishes, key=lambda w: w.rank):
         width = width_of(wish.text, wish.strong)
-        free = [
-            box
-            for box in _candidates(wish, width, height)
-            if box.inside(plot) and not any(box.touches(other.box, 2.0) for other in standing)
+        reach = width + GAP_PX
+        left, right = wish.x - reach, wish.x + reach
+        near = [line for line in lines if line[0] < right and line[2] > left]
+        beside = [
+            other.box for other in standing if other.box.left - 2.0 < right and left < other.box.right + 2.0
         ]
-        clear = [box for box in free if not any(box.crossed_by(line) for line in lines)]
-        chosen = clear or (free if wish.rank < MUST_STAND else [])
-        if chosen:
-            standing.append(Label(chosen[0], wish.text, wish.series, wish.strong))
+        fallback: Box | None = None
+        for box in _candidates(wish, width, height):
+            if not box.inside(plot) or any(box.touches(other, 2.0) for other in beside):
+                continue
+            if not any(box.crossed_by(line) for line in near):
+                break
+            fallback = fallback or box
+        else:
+            if fallback is None or wish.rank >= MUST_STAND:
+                continue
+            box = fallback
+        standing.append(Label(box, wish.text, wish.series, wish.strong))
     return tuple(standing)
 
 

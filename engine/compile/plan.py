@@ -73,6 +73,14 @@ class Plan:
             for s, r in zip(answer.sections, self.layout.section_rows[stage], strict=True)
         ]
 
+    def owner_of(self, row: int) -> tuple[str, str]:
+        """The stage and section a row with a clip point belongs to; a half-driven link's is its output's."""
+        for stage in self.answers:
+            for section, at in self.section_list(stage):
+                if at == row:
+                    return stage, section.name
+        return next((stage, "output, one leg") for stage, at in self.half_driven() if at == row)
+
     def input_row(self, stage: str, port: str = "in") -> int:
         """Where the level at an input stands; silence (0) where nothing feeds it."""
         return int(self.place[self.layout.input_rows.get((stage, port), 0)])
