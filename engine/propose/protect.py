@@ -1,0 +1,109 @@
+"""What protects stays so: how far the level may move at compressors and limiters, and where limiters are to be re-set.
+
+A search keeps the gain of dynamics as it is. So a compressor at work keeps its level, one at rest may rise to its
+threshold. A limiter whose threshold is free is re-set with the gain behind it, for it is true for one gain only; at one
+that is locked the level stays below the threshold, and the gain behind it does not rise.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+
+import numpy as np
+
+from engine.limits import RESET_DB, limiter_thresholds
+from engine.outcome import Outcome
+from engine.project import Changes
+from engine.sections.base import Dynamics
+from engine.solve import FLAT, PEAK, PROGRAMME
+from engine.stages import Stage
+
+from .cells import STEP_DB, Region
+from .levers import Hand
+from .reach import End
+from .wishes import Wishes
+
+
+def free_thresholds(outcome: Outcome, wishes: Wishes) -> frozenset[Hand]:
+    """Limiter thresholds a proposal may re-set: in circuit, adjustable, not locked by wish."""
+    found = set()
+    for key, stage in outcome.project.stage.items():
+        if (key, "") in wishes.locked or (wishes.stages is not None and key not in wishes.stages):
+            continue
+        for limiter in stage.limiters():
+            hand = (key, limiter.control)
+            if limiter.is_in and getattr(stage, limiter.control).state == "adjustable" and hand not in wishes.locked:
+                found.add(hand)
+    return frozenset(found)
+
+
+def level_bounds(
+    outcome: Outcome, wishes: Wishes, regions: Sequence[Region], place: Mapping[int, int], ends: Sequence[tuple[End, int]]
+) -> None:  # fmt: skip
+    """Bound the regions ahead of dynamics."""
+    plan = outcome.plan
+    free = free_thresholds(outcome, wishes)
+    for key, stage in outcome.project.stage.items():
+        limiter_of = {limiter.section: limiter for limiter in stage.limiters()}
+        for section, row in plan.section_list(key):
+            curve = section.dynamics
+            if curve is None or curve.spares_noise or row not in outcome.solution.factors:
+                continue
+            limiter = limiter_of.get(section.name)
+            if limiter is not None and (key, limiter.control) in free:
+                continue
+            region = regions[place[row]]
+            room = _room_db(outcome, row, curve)
+            region.high = min(region.high, max(0, int(np.floor(room / STEP_DB))))
+            if limiter is None and room < 0.0:
+                region.low = max(region.low, 0)
+            elif limiter is not None:
+                wishes_behind = [
+                    regions[at].wish or 0.0
+                    for end, at in ends
+                    if end.stage in outcome.project.topology.fed_by(key)
+                ]
+                if wishes_behind:
+                    least = round(max(wishes_behind) / STEP_DB)
+                    region.low = max(region.low, min(least, region.high))
+
+
+def _room_db(outcome: Outcome, row: int, curve: Dynamics) -> float:
+    """How far the level may rise before the curve acts [dB]; negative where it acts."""
+    lane = PEAK if curve.limiter or curve.detector == "peak" else PROGRAMME
+    plan = outcome.plan
+    parent = int(plan.graph.first_parent[row])
+    heard = float((outcome.solution.spectra[parent, lane, 0] * plan.rows.gain[row, 0]) @ plan.axis.weights[:, FLAT])
+    threshold = float(np.asarray(curve.threshold).ravel()[0])
+    if not heard > 0.0 or not np.isfinite(threshold):
+        return np.inf
+    return 10.0 * float(np.log10(threshold / heard))
+
+
+def reset_limiters(before: Outcome, after: Outcome, wishes: Wishes) -> Changes:
+    """The edit that moves free thresholds against the gain that changed behind them, never letting more through."""
+    old = {(each.limiter, each.control, each.loudspeaker): each for each in limiter_thresholds(before.plan)}
+    free = free_thresholds(before, wishes)
+    change: dict[Hand, float] = {}
+    made: dict[Hand, float] = {}
+    for each in limiter_thresholds(after.plan):
+        hand = (each.limiter, each.control)
+        known = old.get((*hand, each.loudspeaker))
+        if hand in free and known is not None:
+            more = each.gain_db - known.gain_db
+            if hand not in change or more > change[hand]:
+                change[hand], made[hand] = more, each.gain_db
+    found: dict[str, tuple[Stage, Stage]] = {}
+    for (key, control), more in change.items():
+        if abs(more) <= RESET_DB:
+            continue
+        stage = found[key][1] if key in found else after.project.stage[key]
+        steps = stage.control_range(control).positions
+        wanted = float(getattr(stage, control).value) - more
+        fitting = steps[steps <= wanted + 1e-6]
+        value = float(fitting[-1] if fitting.size else steps[0])
+        moved = stage.with_control(control, round(value, 6))
+        if control in stage.made_for:
+            moved = moved.with_fields(made_for={**stage.made_for, control: round(made[key, control], 3)})
+        found[key] = (after.project.stage[key], moved)
+    return {key: pair for key, pair in found.items() if pair[0] != pair[1]}

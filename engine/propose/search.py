@@ -1,0 +1,286 @@
+"""Search: from a solved project and wishes to a position for every free control."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from engine.outcome import Outcome
+from engine.rows import Array
+
+from .cells import STEP_DB, Due, Region, Web, build_moves, gather_rows
+from .costs import lever_cost, meter_dues
+from .levers import Hand, Lever, find_levers
+from .protect import level_bounds
+from .reach import End, find_ends, noise_reach
+from .rings import choices_of, cut_rings, pin, shared_levers, side_by_side, with_choice
+from .walk import Found, NoWalk, Walk, cost_of, lever_positions, noise_of, trimmed
+from .wishes import Wishes, free_hands, held_back_db, wanted_margin_db
+
+WINDOW_DB = 0.5  # a seat within this of its target is on it
+HISS_EQUAL = 10.0 ** (0.5 / 10.0)  # hiss within 0.5 dB counts as equal
+FLOOR_DB = -60.0
+MOST_MARGIN_DB = 120.0
+RATE_STEPS = 5
+
+
+@dataclass(frozen=True, eq=False)
+class Problem:
+    """Everything a search reads: levers, the web they make, and the ends with the region of each."""
+
+    outcome: Outcome
+    wishes: Wishes
+    levers: tuple[Lever, ...]
+    web: Web
+    ends: tuple[tuple[End, int], ...]
+    wanted_db: float
+
+
+@dataclass(frozen=True, eq=False)
+class Choice:
+    """What was found: the positions, the smallest margin reached (alignment counted) and noise over programme at the ends."""
+
+    values: Mapping[Hand, float]
+    margin_db: float
+    noise: float
+    cost: float
+    shifts_db: tuple[float, ...]  # by region
+    kept_level: tuple[int, ...]  # regions held at a level because paths meet again
+
+
+def pose(outcome: Outcome, wishes: Wishes, corrections: Mapping[str, float] | None = None) -> Problem:
+    """Read the levers and gather the rows. `corrections` [dB] are added to what single ends wish."""
+    ends = find_ends(outcome)
+    reach = noise_reach(outcome, ends)
+    levers = find_levers(outcome, free_hands(outcome, wishes), reach)
+    plan = outcome.plan
+    moved = {row.row for lever in levers for row in lever.rows}
+    owner = gather_rows(outcome, moved)
+    region_of: dict[int, int] = {}
+    for row in range(plan.graph.size):
+        region_of.setdefault(owner[row], len(region_of))
+    place = {row: region_of[owner[row]] for row in range(plan.graph.size)}
+    held = held_back_db(outcome, wishes)
+    regions = _regions(outcome, len(region_of), place, moved, held, reach)
+    wished = _wish(regions, ends, place, corrections or {})
+    level_bounds(outcome, wishes, regions, place, wished)
+    for region, due in meter_dues(outcome, place):
+        regions[region].dues.append(due)
+    parents = {row: int(plan.graph.first_parent[row]) for row in moved}
+    moves = [
+        move
+        for index, lever in enumerate(levers)
+        for move in build_moves(index, lever, parents, place, held, lever_cost(outcome.project, lever))
+    ]
+    web = Web(regions, moves, place)
+    return Problem(outcome, wishes, levers, web, wished, wanted_margin_db(outcome, wishes))
+
+
+def _regions(
+    outcome: Outcome, count: int, place: Mapping[int, int], moved: set[int], held: Array, reach: Array
+) -> list[Region]:
+    plan, margins = outcome.plan, outcome.margins
+    regions = [Region() for _ in range(count)]
+    noise = (plan.rows.noise[:, 0] * reach).sum(axis=1)
+    before, behind = margins.at_in_db[:, 0] - held, margins.at_out_db[:, 0] - held
+    pairs = set(plan.graph.pair_rows.tolist())
+    for row in range(1, plan.graph.size):
+        if row in moved:
+            continue
+        if row in pairs:
+            # What two rows share moves with the later of them.
+            row_place = place[int(plan.graph.pair_of[np.flatnonzero(plan.graph.pair_rows == row)[0]])]
+            regions[row_place].noise += float(noise[row])
+            continue
+        ahead = regions[place[int(plan.graph.first_parent[row])]]
+        ahead.margin = min(ahead.margin, float(before[row]))
+        own = regions[place[row]]
+        own.margin = min(own.margin, float(behind[row]))
+        own.noise += float(noise[row])
+    for source in (0, *plan.graph.emitting.tolist()):
+        regions[place[source]].low = regions[place[source]].high = 0
+    return regions
+
+
+def _wish(
+    regions: list[Region], ends: tuple[End, ...], place: Mapping[int, int], corrections: Mapping[str, float]
+) -> tuple[tuple[End, int], ...]:
+    """Give each end's region its window. Where several ends share one, the reference seat speaks, then one with a target."""
+    found = tuple((end, place[end.row]) for end in ends)
+    ranked = sorted(found, key=lambda pair: (not pair[0].is_reference, pair[0].off_db is None, not pair[0].is_seat))
+    for end, index in ranked:
+        region = regions[index]
+        if region.wish is not None:
+            continue
+        region.wish = (end.off_db or 0.0) + corrections.get(end.stage, 0.0)
+    return found
+
+
+def windowed(web: Web, window_db: float = WINDOW_DB) -> Web:
+    """The web with every end's region held within its window."""
+    regions = []
+    for region in web.regions:
+        if region.wish is not None:
+            low = int(np.ceil((region.wish - window_db) / STEP_DB - 1e-6))
+            high = int(np.floor((region.wish + window_db) / STEP_DB + 1e-6))
+            region = replace(region, low=max(region.low, low), high=min(region.high, high))
+        regions.append(region)
+    return replace(web, regions=regions)
+
+
+def search(problem: Problem, *, cancelled: Callable[[], bool] | None = None) -> Choice:
+    """The best settings in the order of aims: margin up to the wanted one, then hiss, then cost. Raises `NoWalk`."""
+    best: tuple[tuple[float, float, float], Choice] | None = None
+    web = windowed(problem.web)
+    shared = shared_levers(web)
+    for choice in choices_of(web, shared) if shared else iter([{}]):
+        if cancelled is not None and cancelled():
+            break
+        fixed = with_choice(web, choice)
+        if fixed is None:
+            continue
+        try:
+            found = _search_tree(problem, fixed)
+        except NoWalk:
+            continue
+        rank = (-round(found.margin_db, 2), _rounded(found.noise), found.cost)
+        if best is None or _is_better(rank, best[0]):
+            best = (rank, found)
+    if best is None:
+        raise NoWalk
+    return best[1]
+
+
+def _rounded(noise: float) -> float:
+    return 10.0 * float(np.log10(noise)) if noise > 0.0 else -np.inf
+
+
+def _is_better(one: tuple[float, float, float], other: tuple[float, float, float]) -> bool:
+    """Whether the first is better in the order of aims; hiss within 0.5 dB counts as equal."""
+    if one[0] != other[0]:
+        return one[0] < other[0]
+    if abs(one[1] - other[1]) > 0.5:
+        return one[1] < other[1]
+    return one[2] < other[2] - 1e-9
+
+
+def _search_tree(problem: Problem, web: Web) -> Choice:
+    web = trimmed(side_by_side(trimmed(web, FLOOR_DB)), FLOOR_DB)
+    tree, pinned = cut_rings(web)
+    if pinned:
+        tree = _best_pins(web, tree, pinned, problem.wanted_db)
+    floor = min(_widest(tree, problem.wanted_db), problem.wanted_db)
+    found, kept = _cheap_and_quiet(tree, floor)
+    values = {
+        hand: float(value)
+        for lever, place in lever_positions(kept, found).items()
+        for hand, value in zip(
+            problem.levers[lever].hands, problem.levers[lever].values[place].tolist(), strict=True
+        )
+    }
+    shifts = tuple(shift * STEP_DB for shift in found.shifts)
+    return Choice(values, floor, noise_of(kept, found), cost_of(kept, found), shifts, tuple(pinned))
+
+
+def _widest(tree: Web, wanted: float) -> float:
+    """The widest smallest margin. Bounds alone give a ceiling for it, so that few shifts are left to walk through."""
+    low, high = FLOOR_DB, min(wanted, MOST_MARGIN_DB)
+    if _is_open(tree, high):
+        low = high
+    while high - low > 0.25:
+        middle = 0.5 * (low + high)
+        low, high = (middle, high) if _is_open(tree, middle) else (low, middle)
+    below = 0.5
+    while True:
+        floor = max(low - below, FLOOR_DB)
+        try:
+            return Walk(trimmed(tree, floor)).widest(wanted).value
+        except NoWalk:
+            if floor == FLOOR_DB:
+                raise
+            below *= 4.0
+
+
+def _is_open(web: Web, floor: float, cap: float = np.inf) -> bool:
+    try:
+        trimmed(web, floor, cap)
+    except NoWalk:
+        return False
+    return True
+
+
+def _quietest(web: Web, floor: float) -> float:
+    """The least noise over programme among walks with margins of `floor`; again bounds leave few shifts."""
+    low, high = -300.0, 60.0
+    while high - low > 0.5:
+        middle = 0.5 * (low + high)
+        low, high = (low, middle) if _is_open(web, floor, 10.0 ** (middle / 10.0)) else (middle, high)
+    cap = 10.0 ** ((high + 6.0) / 10.0)
+    while True:
+        try:
+            kept = trimmed(web, floor, cap)
+            found = noise_of(kept, Walk(kept).cheapest(0.0))
+        except NoWalk:
+            cap *= 100.0
+            if cap > 1e30:
+                raise
+            continue
+        if found <= cap:
+            return found
+        cap = found * 1.0001
+
+
+def _cheap_and_quiet(tree: Web, floor: float) -> tuple[Found, Web]:
+    """The least cost among walks whose hiss is within 0.5 dB of the least: a rate of exchange is raised until it is not."""
+    tree = trimmed(tree, floor)
+    noise = _quietest(tree, floor)
+    if not noise > 0.0:
+        return Walk(tree).cheapest(1.0), tree
+    most = noise * HISS_EQUAL
+    web = trimmed(tree, floor, most * 1.0001)
+    walk = Walk(web)
+    best = walk.cheapest(1e-9, noise)
+    spread = max(cost_of(web, best), 1e-6)
+    low, high = (HISS_EQUAL - 1.0) / spread, np.inf
+    rate = low
+    for _ in range(RATE_STEPS):
+        found = walk.cheapest(rate, noise)
+        if noise_of(web, found) <= most * (1.0 + 1e-9):
+            if cost_of(web, found) <= cost_of(web, best) + 1e-9:
+                best = found
+            low, rate = rate, (rate * 8.0 if high == np.inf else (rate * high) ** 0.5)
+        else:
+            high, rate = rate, (low * rate) ** 0.5
+    return best, web
+
+
+def _best_pins(web: Web, tree: Web, pinned: list[int], wanted: float) -> Web:
+    """Choose the shifts of pinned regions one after another: the nearest to its wish that is as good as any."""
+    for region in pinned:
+        free = web.regions[region]
+        wish = free.wish or 0.0
+        around = range(free.low, free.high + 1) if free.wish is not None else _coarse(free.low, free.high)
+        best: tuple[float, int] | None = None
+        for shift in sorted(around, key=lambda s: abs(s * STEP_DB - wish)):
+            try:
+                found = Walk(trimmed(pin(tree, region, shift), FLOOR_DB)).widest(wanted)
+            except NoWalk:
+                continue
+            if best is None or found.value > best[0] + 1e-6:
+                best = (found.value, shift)
+            if best[0] >= wanted:
+                break
+        if best is not None:
+            tree = pin(tree, region, best[1])
+    return trimmed(tree, FLOOR_DB)
+
+
+def _coarse(low: int, high: int) -> range:
+    """Whole decibels around the present."""
+    step = round(1.0 / STEP_DB)
+    return range(max(low, -20 * step) // step * step, min(high, 20 * step) + 1, step)
+
+
+__all__ = ["Choice", "Due", "Problem", "pose", "search", "windowed"]
