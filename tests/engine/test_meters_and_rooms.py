@@ -30,11 +30,14 @@ def test_a_bus_without_a_meter_has_none():
 
 
 def test_s38_margins_from_a_seats_own_figures():
-    """S38: talker 12 m, microphone to box 8 m, box 9 m, talker to microphone 0.3 m, EAD 2.4 m: 11.0, 5.0, 2.0 dB."""
+    """S38: talker 12 m, microphone to box 8 m, box 9 m, talker to microphone 0.3 m: 11.0, 5.0, 2.0 dB."""
     for count, margin in (("1", 11.04), ("4", 5.02), ("8", 2.01)):
         outcome = solved(
             line(), amplifier(gain_db="x20"), loudspeaker(),
-            seat(talker_m="12 m", microphone_loudspeaker_m="8 m", talker_microphone_m="0.3 m", equivalent_m="2.4 m", open_microphones=count),
+            seat(
+                talker_m="12 m", microphone_loudspeaker_m="8 m", talker_microphone_m="0.3 m", equivalent_m="2.4 m",
+                open_microphones=count,
+            ),
             distance="9 m",
         )  # fmt: skip
         found = outcome.seats[0].acoustic_gain

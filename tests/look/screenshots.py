@@ -52,7 +52,12 @@ def clipped(window: object) -> list[str]:
     found = []
     for label in window.findChildren(QLabel):
         wide = label.fontMetrics().horizontalAdvance(label.text())
-        if label.isVisible() and not label.wordWrap() and "\n" not in label.text() and wide > label.width() + 1:
+        if (
+            label.isVisible()
+            and not label.wordWrap()
+            and "\n" not in label.text()
+            and wide > label.width() + 1
+        ):
             found.append(f"{label.text()!r}: {wide} px in {label.width()}")
     for button in window.findChildren(QAbstractButton):
         wide = button.fontMetrics().horizontalAdvance(button.text().replace("&", ""))
@@ -92,7 +97,7 @@ def take() -> int:
                 window.set_scheme(scheme)
                 settle()
                 stages = window.document.project.stage
-                window.document.select([selected] if selected in stages else [])
+                window.document.select([selected] if selected is not None and selected in stages else [])
                 settle(0.6)
                 name = f"{sample}-{width}-{scheme.replace(' ', '-')}.png"
                 window.grab().toImage().convertToFormat(QImage.Format.Format_RGB888).save(str(OUT / name))
