@@ -43,7 +43,8 @@ class Edit(QUndoCommand):
             document.end_gesture()
 
     def id(self) -> int:
-        return -1  # never merged by the stack; said here too, or PySide keeps a reference to None each time it asks
+        # Never merged by the stack; said here too, or PySide keeps a reference to None each time it asks.
+        return -1
 
     def take_in(self, changes: Changes) -> None:
         """Add later changes of the same gesture, keeping what was first before; back at the start: obsolete."""
