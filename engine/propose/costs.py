@@ -29,6 +29,8 @@ def lever_cost(project: Project, lever: Lever) -> Array:
     """The cost of each position [position]."""
     found = np.zeros(len(lever.values))
     for place, (stage, control) in enumerate(lever.hands):
+        if not control:  # no hand's
+            continue
         spec = project.stage[stage].control_specs()[control]
         values = lever.values[:, place]
         moved = np.abs(values - values[0])

@@ -80,6 +80,24 @@ def _room_db(outcome: Outcome, row: int, curve: Dynamics) -> float:
     return 10.0 * float(np.log10(threshold / heard))
 
 
+def limiter_margin_db(outcome: Outcome) -> float | None:
+    """How far the programme's peaks stay below the limiters [dB]: the widest of all branches; None without a limiter.
+
+    A branch's own is that of its first limiter to act.
+    """
+    found: dict[str, float] = {}
+    for each in limiter_thresholds(outcome.plan):
+        if each.present is None:
+            continue
+        section = next(s for s in outcome.project.stage[each.limiter].limiters() if s.control == each.control)
+        row = outcome.plan.section_row(each.limiter, section.section)
+        curve = outcome.plan.rows.dynamics.get(row)
+        if curve is not None:
+            room = _room_db(outcome, row, curve)
+            found[each.loudspeaker] = min(found.get(each.loudspeaker, np.inf), room)
+    return max(found.values(), default=None)
+
+
 def reset_limiters(before: Outcome, after: Outcome, wishes: Wishes) -> Changes:
     """The edit that moves free thresholds against the gain that changed behind them, never letting more through."""
     old = {(each.limiter, each.control, each.loudspeaker): each for each in limiter_thresholds(before.plan)}

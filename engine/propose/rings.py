@@ -90,7 +90,7 @@ def choices_of(web: Web, shared: list[int]) -> Iterator[dict[int, int]]:
     if np.prod([float(len(ladder)) for ladder in ladders]) <= MOST_CHOICES:
         yield from (dict(zip(shared, choice, strict=True)) for choice in product(*ladders))
         return
-    now = {lever: 0 for lever in shared}
+    now = dict.fromkeys(shared, 0)
     yield now
     for place in range(1, max(len(ladder) for ladder in ladders)):
         yield {lever: ladder[min(place, len(ladder) - 1)] for lever, ladder in zip(shared, ladders, strict=True)}
@@ -123,7 +123,7 @@ def cut_rings(web: Web) -> tuple[Web, list[int]]:
         region = ends[0] if ends else max(ring, key=lambda each: (degree[each], -each))
         pinned.append(region)
         wish = web.regions[region].wish
-        at = 0 if wish is None else round(wish / 0.05)
+        at = 0 if wish is None or abs(wish) <= 0.5 else round(wish / 0.05)
         web = pin(web, region, min(max(at, web.regions[region].low), web.regions[region].high))
     return web, pinned
 

@@ -2,26 +2,32 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
 
+from engine.loads import amplifiers_of
 from engine.outcome import Outcome
 from engine.rows import Array
 
 from .cells import STEP_DB, Due, Region, Web, build_moves, gather_rows
 from .costs import lever_cost, meter_dues
 from .levers import Hand, Lever, find_levers
-from .protect import level_bounds
+from .protect import level_bounds, limiter_margin_db
 from .reach import End, find_ends, noise_reach
 from .rings import choices_of, cut_rings, pin, shared_levers, side_by_side, with_choice
 from .walk import Found, NoWalk, Walk, cost_of, lever_positions, noise_of, trimmed
 from .wishes import Wishes, free_hands, held_back_db, wanted_margin_db
 
 WINDOW_DB = 0.5  # a seat within this of its target is on it
+NARROW_DB = 0.1  # tried first, so that nothing is gained by being off the target
 HISS_EQUAL = 10.0 ** (0.5 / 10.0)  # hiss within 0.5 dB counts as equal
+HISS_OF_WINDOW = 10.0 ** ((WINDOW_DB + NARROW_DB) / 10.0)
 FLOOR_DB = -60.0
+MARGIN_EQUAL_DB = 0.5
+PER_DB_LATE = 5.0
+PER_DB_OFF = 0.5  # what a dB off the target costs, within its window
 MOST_MARGIN_DB = 120.0
 RATE_STEPS = 5
 
@@ -50,11 +56,24 @@ class Choice:
     kept_level: tuple[int, ...]  # regions held at a level because paths meet again
 
 
-def pose(outcome: Outcome, wishes: Wishes, corrections: Mapping[str, float] | None = None) -> Problem:
-    """Read the levers and gather the rows. `corrections` [dB] are added to what single ends wish."""
+def pose(
+    outcome: Outcome,
+    wishes: Wishes,
+    corrections: Mapping[str, float] | None = None,
+    more: Callable[[Outcome, Array], Sequence[Lever]] | None = None,
+) -> Problem:
+    """Read the levers and gather the rows.
+
+    `corrections` [dB] are added to what single ends wish; `more` makes further levers from the outcome and the reach of
+    its noise, of rows that nothing else moves.
+    """
     ends = find_ends(outcome)
     reach = noise_reach(outcome, ends)
     levers = find_levers(outcome, free_hands(outcome, wishes), reach)
+    if more is not None:
+        taken = {row.row for lever in levers for row in lever.rows}
+        added = (each for each in more(outcome, reach) if not taken & {row.row for row in each.rows})
+        levers = (*levers, *added)
     plan = outcome.plan
     moved = {row.row for lever in levers for row in lever.rows}
     owner = gather_rows(outcome, moved)
@@ -75,7 +94,12 @@ def pose(outcome: Outcome, wishes: Wishes, corrections: Mapping[str, float] | No
         for move in build_moves(index, lever, parents, place, held, lever_cost(outcome.project, lever))
     ]
     web = Web(regions, moves, place)
-    return Problem(outcome, wishes, levers, web, wished, wanted_margin_db(outcome, wishes))
+    wanted = wanted_margin_db(outcome, wishes)
+    if wishes.alignment == "limiter first":
+        room = limiter_margin_db(outcome)
+        louder = max((regions[index].wish or 0.0 for end, index in wished if end.is_seat), default=0.0)
+        wanted = wanted if room is None else room - louder
+    return Problem(outcome, wishes, levers, web, wished, wanted)
 
 
 def _regions(
@@ -115,16 +139,23 @@ def _wish(
         if region.wish is not None:
             continue
         region.wish = (end.off_db or 0.0) + corrections.get(end.stage, 0.0)
+        region.dues.append(Due(region.wish, region.wish, PER_DB_OFF))
     return found
 
 
 def windowed(web: Web, window_db: float = WINDOW_DB) -> Web:
-    """The web with every end's region held within its window."""
+    """The web with every end's region held within its window.
+
+    A narrower one than the usual stands around the present level where that is on target.
+    """
     regions = []
     for region in web.regions:
         if region.wish is not None:
-            low = int(np.ceil((region.wish - window_db) / STEP_DB - 1e-6))
-            high = int(np.floor((region.wish + window_db) / STEP_DB + 1e-6))
+            middle = region.wish
+            if window_db < WINDOW_DB and abs(middle) <= WINDOW_DB:
+                middle = 0.0
+            low = int(np.ceil((middle - window_db) / STEP_DB - 1e-6))
+            high = int(np.floor((middle + window_db) / STEP_DB + 1e-6))
             region = replace(region, low=max(region.low, low), high=min(region.high, high))
         regions.append(region)
     return replace(web, regions=regions)
@@ -168,11 +199,18 @@ def _is_better(one: tuple[float, float, float], other: tuple[float, float, float
 
 def _search_tree(problem: Problem, web: Web) -> Choice:
     web = trimmed(side_by_side(trimmed(web, FLOOR_DB)), FLOOR_DB)
-    tree, pinned = cut_rings(web)
-    if pinned:
-        tree = _best_pins(web, tree, pinned, problem.wanted_db)
-    floor = min(_widest(tree, problem.wanted_db), problem.wanted_db)
-    found, kept = _cheap_and_quiet(tree, floor)
+    tree, widest, pinned = _opened(problem, web)
+    try:
+        close = trimmed(windowed(web, NARROW_DB), FLOOR_DB)
+        close_tree, close_widest, close_pinned = _opened(problem, close)
+        if _is_as_good(close_tree, close_widest, tree, widest):
+            web, tree, widest, pinned = close, close_tree, close_widest, close_pinned
+    except NoWalk:
+        pass
+    floor, most = _limits(problem, web, widest)
+    if problem.wishes.alignment == "amplifier last":
+        tree = _driven(problem, tree, widest)
+    found, kept = _cheap_and_quiet(tree, floor, most)
     values = {
         hand: float(value)
         for lever, place in lever_positions(kept, found).items()
@@ -181,7 +219,61 @@ def _search_tree(problem: Problem, web: Web) -> Choice:
         )
     }
     shifts = tuple(shift * STEP_DB for shift in found.shifts)
-    return Choice(values, floor, noise_of(kept, found), cost_of(kept, found), shifts, tuple(pinned))
+    return Choice(values, widest, noise_of(kept, found), cost_of(kept, found), shifts, pinned)
+
+
+def _opened(problem: Problem, web: Web) -> tuple[Web, float, tuple[int, ...]]:
+    """The web as a tree, its widest smallest margin up to the wanted one, and the regions pinned for it."""
+    tree, pinned = cut_rings(web)
+    if pinned:
+        tree = _best_pins(web, tree, pinned, problem.wanted_db)
+    return tree, min(_widest(tree, problem.wanted_db), problem.wanted_db), tuple(pinned)
+
+
+def _is_as_good(close: Web, close_widest: float, wide: Web, widest: float) -> bool:
+    """Whether holding the seats close to their targets costs no margin or hiss beyond what the window itself is worth."""
+    if close_widest < widest - MARGIN_EQUAL_DB - 1e-9 or (close_widest < 0.0 <= widest):
+        return False
+    return _quietest(close, close_widest) <= _quietest(wide, widest) * HISS_OF_WINDOW
+
+
+def _driven(problem: Problem, web: Web, widest: float) -> Web:
+    """The web with a price on margin at what drives the amplifiers: it is to clip ahead of them."""
+    plan, margins = problem.outcome.plan, problem.outcome.margins.at_out_db[:, 0]
+    regions = list(web.regions)
+    for stage in amplifiers_of(plan):
+        row = plan.input_row(stage.id)
+        while row and not np.isfinite(margins[row]):
+            row = int(plan.graph.first_parent[row])
+        if row:
+            at = web.region_of[row]
+            due = Due(float(margins[row]) - widest, np.inf, PER_DB_LATE)
+            regions[at] = replace(regions[at], dues=[*regions[at].dues, due])
+    return replace(web, regions=regions)
+
+
+def _limits(problem: Problem, web: Web, widest: float) -> tuple[float, float]:
+    """The margin to keep [dB] and the noise not to exceed.
+
+    Where the wanted margin is out of reach, 0.5 dB less than the best counts as equal, but nothing below 0 dB. Present
+    settings that are on target are not made worse.
+    """
+    present = problem.web
+    now_db = min(
+        [region.margin for region in present.regions] + [float(move.margin[0]) for move in present.moves]
+    )
+    is_on_target = all(region.low <= 0 <= region.high for region in web.regions)
+    floor = widest
+    if widest < problem.wanted_db and problem.wishes.alignment in ("reserve", "together"):
+        near = max(widest - MARGIN_EQUAL_DB, min(widest, 0.0))
+        if is_on_target and now_db >= near:
+            floor = min(now_db, widest)
+        elif problem.wishes.alignment == "reserve":
+            floor = near
+    if not is_on_target or now_db < floor - 1e-9:
+        return floor, np.inf
+    now = sum(region.noise for region in present.regions) + sum(float(move.noise[0]) for move in present.moves)
+    return floor, now * (1.0 + 1e-9)
 
 
 def _widest(tree: Web, wanted: float) -> float:
@@ -232,13 +324,13 @@ def _quietest(web: Web, floor: float) -> float:
         cap = found * 1.0001
 
 
-def _cheap_and_quiet(tree: Web, floor: float) -> tuple[Found, Web]:
+def _cheap_and_quiet(tree: Web, floor: float, most: float) -> tuple[Found, Web]:
     """The least cost among walks whose hiss is within 0.5 dB of the least: a rate of exchange is raised until it is not."""
     tree = trimmed(tree, floor)
     noise = _quietest(tree, floor)
     if not noise > 0.0:
         return Walk(tree).cheapest(1.0), tree
-    most = noise * HISS_EQUAL
+    most = max(min(noise * HISS_EQUAL, most), noise)
     web = trimmed(tree, floor, most * 1.0001)
     walk = Walk(web)
     best = walk.cheapest(1e-9, noise)
@@ -260,7 +352,7 @@ def _best_pins(web: Web, tree: Web, pinned: list[int], wanted: float) -> Web:
     """Choose the shifts of pinned regions one after another: the nearest to its wish that is as good as any."""
     for region in pinned:
         free = web.regions[region]
-        wish = free.wish or 0.0
+        wish = 0.0 if free.wish is None or free.low <= 0 <= free.high else free.wish
         around = range(free.low, free.high + 1) if free.wish is not None else _coarse(free.low, free.high)
         best: tuple[float, int] | None = None
         for shift in sorted(around, key=lambda s: abs(s * STEP_DB - wish)):
