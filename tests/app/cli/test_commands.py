@@ -35,8 +35,28 @@ def number_or_null(value: object) -> bool:
     return value is None or (isinstance(value, float) and value == value)
 
 
-def test_the_commands_there_are():
-    assert list(COMMANDS) == ["table", "check", "sheet", "diagram"]
+def test_every_command_explains_itself(run):
+    assert {"table", "check", "sheet", "diagram", "signal", "programme"} <= set(COMMANDS)
+    for name in COMMANDS:
+        status, out, _ = run(name, "--help")
+        assert status == 0
+        assert f"gainwright {name}" in out
+
+
+def test_a_signal_is_written_and_read_back(run, tmp_path):
+    target = tmp_path / "pink.wav"
+    status, out, err = run("signal", "pink", "-o", target, "--level", "-18", "--seconds", "5")
+    assert status == 0
+    assert "-18 dBFS" in out
+    assert "protect ears" in err
+    status, out, _ = run("programme", target, "--json")
+    assert status == 0
+    assert json.loads(out)["rms_dbfs"] == pytest.approx(-18.0, abs=0.02)
+    assert run("programme", target)[0] == 0
+    status, _, err = run("signal", "sine", "-o", target, "--level", "3")
+    assert (status, "lower the level" in err) == (2, True)
+    status, _, err = run("programme", __file__)
+    assert (status, "cannot be read" in err) == (2, True)
 
 
 # -- table ---------------------------------------------------------------------------------------------------
