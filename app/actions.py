@@ -66,6 +66,13 @@ def make_actions(window: MainWindow) -> Mapping[str, QAction]:
         window.recordings.choose,
         "Look at the show's own programme, and use it",
     )
+    add(
+        "propose",
+        "P&ropose settings…",
+        "Ctrl+Shift+R",
+        window.propose_settings,
+        "Work out where every free control should stand",
+    )
     add("venue", "&Venue and conditions…", "F4", window.edit_venue)
     add("quit", "&Quit", "Ctrl+Q", window.close)
 

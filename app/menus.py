@@ -23,7 +23,7 @@ MENUS: Mapping[str, tuple[str, ...]] = {
     ),
     "&Edit": (
         "undo", "redo", "-", "cut", "copy", "paste", "duplicate", "delete", "select_all", "-",
-        "add", "link", "rename",
+        "add", "link", "rename", "-", "propose",
     ),
     "&View": (
         "zoom_in", "zoom_out", "fit", "-", "unit dBu", "unit dBV", "unit V", "-", "view levels", "view to clip", "hold", "-",

@@ -79,7 +79,9 @@ class MainWindow(QMainWindow):
     def _arrange(self) -> None:
         find = self.actions_.__getitem__
         bar = build_menus(self, self.actions_)
-        self.top = TopLine(bar, [find("undo"), find("redo"), None, find("hold"), None, find("print")])
+        self.top = TopLine(
+            bar, [find("undo"), find("redo"), None, find("hold"), find("propose"), None, find("print")]
+        )
         self.setMenuWidget(self.top)
         self.centre.head.add_choices(
             [find(f"unit {unit}") for unit in UNITS], [find("view levels"), find("view to clip")]
@@ -257,6 +259,12 @@ class MainWindow(QMainWindow):
         """Name, revision and conditions of the venue: the card shows them where nothing is selected."""
         self.document.select(())
         _take_focus(self.side.card)
+
+    def propose_settings(self) -> None:
+        """Work out settings for the project as it stands."""
+        from .proposal_panel import ProposalPanel
+
+        self._open(lambda: ProposalPanel(self.document, lambda: self.actions_["hold"].setChecked(True), self))
 
     def show_about(self) -> None:
         """What this is, and the cautions."""
