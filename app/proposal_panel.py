@@ -24,6 +24,13 @@ from app.inks import font
 from engine.propose import ALIGNMENTS, Impossible, Proposal, Standing, Wishes, propose
 
 AMPLIFIERS = (("Amplifiers may be turned", "free"), ("Amplifiers stay as they are", "locked"))
+ALIGNED = {
+    "reserve": "Keep the wanted reserve",
+    "together": "Clip together",
+    "amplifier first": "Amplifiers clip first by",
+    "amplifier last": "Amplifiers clip last by",
+    "limiter first": "Limiters work first",
+}
 SCOPES = ("the whole venue", "the selected stages")
 NEEDS_DB = ("amplifier first", "amplifier last")
 
@@ -36,9 +43,9 @@ class ProposalPanel(QDialog):
         self.document, self._hold = document, hold
         self.found: Proposal | Impossible | None = None
         self.setWindowTitle("Propose settings")
-        self.resize(620, 560)
+        self.resize(760, 560)
         self.alignment = QComboBox()
-        self.alignment.addItems([each.capitalize() for each in ALIGNMENTS])
+        self.alignment.addItems([ALIGNED[each] for each in ALIGNMENTS])
         self.alignment.setAccessibleName("How clip points are to meet")
         self.by_db = QDoubleSpinBox()
         self.by_db.setRange(0.0, 30.0)
@@ -54,8 +61,15 @@ class ProposalPanel(QDialog):
         self.headline.setFont(font(14, strong=True))
         self.headline.setWordWrap(True)
         self.body = QWidget()
-        self.rows = QGridLayout(self.body)
-        self.rows.setColumnStretch(3, 1)
+        self.rows = QGridLayout()
+        self.rows.setHorizontalSpacing(16)
+        self.rows.setVerticalSpacing(8)
+        for column, share in enumerate((2, 3, 3, 4)):
+            self.rows.setColumnStretch(column, share)
+        filled = QVBoxLayout(self.body)
+        filled.setContentsMargins(0, 0, 0, 0)
+        filled.addLayout(self.rows)
+        filled.addStretch(1)
         self.apply_button = QPushButton("Apply these settings")
         self.apply_button.setProperty("primary", True)
         self._arrange()
@@ -135,7 +149,7 @@ class ProposalPanel(QDialog):
         at = self.rows.rowCount()
         for place, text in enumerate(texts):
             label = QLabel(text)
-            label.setWordWrap(place == len(texts) - 1)
+            label.setWordWrap(True)
             label.setFont(font(12, strong=place == 2 and not quiet))
             label.setProperty("quiet", quiet or place in (1, 3))
             self.rows.addWidget(label, at, place, Qt.AlignmentFlag.AlignTop)

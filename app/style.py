@@ -92,6 +92,7 @@ QPushButton[flat="true"], QToolButton[flat="true"] {{ border-color: transparent;
 QDialogButtonBox, QMessageBox {{ dialogbuttonbox-buttons-have-icons: 0; }}
 QToolButton[small="true"] {{ min-height: 20px; padding: 0 7px; }}
 QPushButton[primary="true"] {{ background: {tint}; border-color: {tint}; color: {accent}; font-weight: 600; }}
+QPushButton[primary="true"]:disabled {{ background: transparent; border-color: {hairline}; color: {faint}; }}
 QLineEdit, QPlainTextEdit, QTextEdit, QComboBox, QAbstractSpinBox {{ background: {raised}; color: {ink};
     border: 1px solid {hairline}; border-radius: {CORNER_PX}px; padding: 0 6px; min-height: {row}px;
     selection-background-color: {tint}; selection-color: {ink}; }}
