@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from .alternatives import Alternative, alternatives
 from .impossible import Impossible, Relief
+from .keep_level import LevelKeeper, keep_level
 from .proposal import Proposal, Standing, Touched
 from .wishes import ALIGNMENTS, Alignment, Wishes
 from .working import propose
@@ -10,11 +12,15 @@ from .working import propose
 __all__ = [
     "ALIGNMENTS",
     "Alignment",
+    "Alternative",
     "Impossible",
+    "LevelKeeper",
     "Proposal",
     "Relief",
     "Standing",
     "Touched",
     "Wishes",
+    "alternatives",
+    "keep_level",
     "propose",
 ]

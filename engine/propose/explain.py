@@ -23,6 +23,8 @@ def with_reasons(touched: tuple[Touched, ...], before: Outcome, after: Outcome) 
 
 def _reason(each: Touched, before: Outcome, after: Outcome) -> str:
     stage = after.project.stage[each.stage]
+    if each.stage not in before.project.stage:
+        return "Put it in: it lowers level, clip point and the noise from ahead of it together."
     if any(limiter.control == each.control for limiter in stage.limiters()):
         return "Keeps the limit at the loudspeaker where it was, for the gain behind it has changed."
     old, new = _output(before, each.stage), _output(after, each.stage)

@@ -9,6 +9,7 @@ from engine.loads import amplifiers_of
 from engine.outcome import Outcome
 from engine.project import Changes, difference
 from engine.seat import SeatLevels
+from engine.stages import Stage
 from engine.stages.panel import marking
 
 from .levers import Hand
@@ -156,6 +157,9 @@ def touched_by(before: Outcome, after: Outcome) -> tuple[Touched, ...]:
     found: list[tuple[bool, int, Touched]] = []
     for key in difference(before.project, after.project):
         old, new = before.project.stage.get(key), after.project.stage.get(key)
+        if isinstance(new, Stage) and old is None:
+            there = Touched(key, new.name, "", new.title, "not there", new.summary() or "in the line", None, None, "")
+            found.append((False, order.index(key), there))
         if old is None or new is None:
             continue
         for name, spec, setting in new.controls():

@@ -24,6 +24,9 @@ from .reach import End
 from .wishes import Wishes
 
 
+ON_TARGET_DB = 0.5
+
+
 def free_thresholds(outcome: Outcome, wishes: Wishes) -> frozenset[Hand]:
     """Limiter thresholds a proposal may re-set: in circuit, adjustable, not locked by wish."""
     found = set()
@@ -64,7 +67,8 @@ def level_bounds(
                     if end.stage in outcome.project.topology.fed_by(key)
                 ]
                 if wishes_behind:
-                    least = round(max(wishes_behind) / STEP_DB)
+                    louder = max(wishes_behind)
+                    least = 0 if abs(louder) <= ON_TARGET_DB else round(louder / STEP_DB)
                     region.low = max(region.low, min(least, region.high))
 
 
