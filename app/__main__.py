@@ -12,6 +12,8 @@ USAGE = """\
 gainwright [FILE]                     open the window, on a project if one is named
 gainwright table FILE [--json|--csv]  every node's levels
 gainwright check FILE                 findings; status 1 where one says stop
+gainwright propose FILE [-o OUT]      the settings worked out, and why
+gainwright tolerance FILE             what the figures' tolerances leave
 gainwright sheet FILE -o OUT.pdf      the sheets for the crew
 gainwright diagram FILE -o OUT.png    the level diagram (.png, .svg or .pdf)
 gainwright COMMAND --help             more about one of them

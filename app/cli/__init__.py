@@ -19,5 +19,8 @@ def _lazily(name: str) -> Command:
 
 #: What each first word of the command line runs: its arguments in, its exit status out.
 COMMANDS: Mapping[str, Command] = MappingProxyType(
-    {name: _lazily(name) for name in ("table", "check", "sheet", "diagram", "signal", "programme")}
+    {
+        name: _lazily(name)
+        for name in ("table", "check", "propose", "tolerance", "sheet", "diagram", "signal", "programme")
+    }
 )

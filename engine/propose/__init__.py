@@ -5,7 +5,7 @@ from __future__ import annotations
 from .alternatives import Alternative, alternatives
 from .impossible import Impossible, Relief
 from .keep_level import LevelKeeper, keep_level
-from .proposal import Proposal, Standing, Touched
+from .proposal import Proposal, Standing, Touched, standing
 from .wishes import ALIGNMENTS, Alignment, Wishes
 from .working import propose
 
@@ -23,4 +23,5 @@ __all__ = [
     "alternatives",
     "keep_level",
     "propose",
+    "standing",
 ]
