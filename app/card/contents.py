@@ -76,8 +76,9 @@ def _links(project: Project, links: list[Link], opened: Collection[tuple[str, st
     found = _declared("links", tuple(link.id for link in links), list(links), opened)
     domains = {domain_of(project, link) for link in links}
     air, wire = domains == {Domain.ACOUSTIC}, domains == {Domain.ANALOGUE}
+    unheard = () if all(is_heard(project, link) for link in links) else ("off_axis_db",)
     figures = ("distance_m", *(name for name in found.figures if name != "distance_m")) if air else ()
-    absent = tuple(name for name in found.absent if name not in figures) if air else ()
+    absent = tuple(name for name in found.absent if name not in (*figures, *unheard)) if air else ()
     return Contents(
         "links", found.keys, tuple(sorted(str(each) for each in domains)), options=found.options if wire else (),
         figures=figures, absent=absent,
@@ -127,6 +128,11 @@ def domain_of(project: Project, link: Link) -> Domain:
     """What a link carries."""
     stage = project.stage[link.source]
     return next((port.domain for port in stage.outputs() if port.name == link.output), stage.domain)
+
+
+def is_heard(project: Project, link: Link) -> bool:
+    """Whether people listen where a link ends: only there a source's loss off its axis counts."""
+    return project.stage[link.target].is_seat
 
 
 def _through_air(project: Project, stage: str) -> tuple[str, ...]:

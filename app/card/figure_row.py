@@ -27,9 +27,12 @@ MEANS: dict[Origin, str] = {
 
 
 class FigureRow(Part):
-    """Edits a figure of one item, or the same figure of several together. `name` is numbered where there are many."""
+    """Edits a figure of one item, or the same figure of several together. `name` is numbered where there are many.
 
-    def __init__(self, scene: Scene, keys: Keys, name: str, label: str = "") -> None:
+    `absent` says what holds while nothing is given.
+    """
+
+    def __init__(self, scene: Scene, keys: Keys, name: str, label: str = "", absent: str = "") -> None:
         super().__init__()
         self.scene, self.keys, self.name = scene, keys, name
         self.spec = self._spec()
@@ -39,8 +42,11 @@ class FigureRow(Part):
         self.field = Entry(self.label.text())
         self.field.setToolTip(tip(self._help()))
         self.field.setAccessibleDescription(self._help())
-        self.field.setPlaceholderText(f"such as {self.spec.typical or _example(self.spec)}")
+        self.field.setPlaceholderText(absent or f"such as {self.spec.typical or _example(self.spec)}")
         self.origin = Word()
+        kept = self.origin.sizePolicy()
+        kept.setRetainSizeWhenHidden(True)  # or fields side by side would stand at unlike heights
+        self.origin.setSizePolicy(kept)
         self.tolerance = Entry(f"{self.label.text()}, tolerance", bare=True, size_px=11)
         self.tolerance.setProperty("small", True)
         self.tolerance.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
@@ -119,7 +125,8 @@ class FigureRow(Part):
     def _show_tolerance(self) -> None:
         has_focus = QApplication.focusWidget() in (self.field, self.origin, self.tolerance)
         given = self._figures()[0] is not None
-        shown = bool(self.tolerance.text()) or (given and (has_focus or self.underMouse()))
+        is_pointed_at = self.underMouse() and self.width() >= 3 * TOLERANCE_PX  # the label keeps its room
+        shown = bool(self.tolerance.text()) or (given and (has_focus or is_pointed_at))
         self.tolerance.setVisible(shown)
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from functools import partial
 
 from PySide6.QtCore import QPoint, Qt
-from PySide6.QtWidgets import QMenu, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QMenu, QVBoxLayout, QWidget
 
 from app import edits
 from engine.outcome import Outcome
@@ -14,7 +14,7 @@ from engine.seat import SeatLevels
 from engine.stages import Stage
 
 from . import results
-from .contents import Contents, domain_of
+from .contents import Contents, domain_of, is_heard
 from .control_row import ControlRow
 from .figure_row import FigureRow
 from .option_row import OptionRow
@@ -124,6 +124,7 @@ class Pane(QWidget):
             self._heading("What it carries")
             self._add(Lines(scene.inks, "What it carries", partial(_load_lines, key)))
         self._heading("Levels")
+        self._add(Lines(scene.inks, "Levels of its inputs and outputs", partial(_node_lines, key)))
         self._add(LevelTable(scene.inks, "Levels of its sections", partial(_levels, key)))
 
     def _distances(self) -> None:
@@ -131,7 +132,11 @@ class Pane(QWidget):
             self._heading("Distances")
         for key in self.contents.distances:
             source = self.scene.project.stage[self.scene.project.link[key].source]
-            self._add(FigureRow(self.scene, (key,), "distance_m", label=f"From {source.name}"))
+            distance = FigureRow(self.scene, (key,), "distance_m", label=f"From {source.name}")
+            if is_heard(self.scene.project, self.scene.project.link[key]):
+                self._side_by_side(distance, FigureRow(self.scene, (key,), "off_axis_db", absent="on axis"))
+            else:
+                self._add(distance)
 
     def _figures(self, heading: str) -> None:
         if not self.contents.figures and not self.contents.absent:
@@ -171,6 +176,15 @@ class Pane(QWidget):
             self._body.addSpacing(gap)
         self._body.addWidget(part)
         self.rows.append(part)
+
+    def _side_by_side(self, left: Part, right: Part) -> None:
+        """Two alike in width, their fields on one line whatever stands under them."""
+        both = QHBoxLayout()
+        both.setSpacing(GAP_PX)
+        for part in (left, right):
+            both.addWidget(part, 1, Qt.AlignmentFlag.AlignTop)
+        self._body.addLayout(both)
+        self.rows += [left, right]
 
     def _heading(self, text: str) -> None:
         self._body.addWidget(Heading(text, self.scene.inks))
@@ -307,6 +321,10 @@ def _load_lines(key: str, outcome: Outcome) -> tuple[results.Line, ...]:
 
 def _levels(key: str, outcome: Outcome) -> tuple[results.Levels, ...]:
     return results.levels_of(outcome, key) if key in outcome.project.stage else ()
+
+
+def _node_lines(key: str, outcome: Outcome) -> tuple[results.Line, ...]:
+    return results.node_lines(outcome, key) if key in outcome.project.stage else ()
 
 
 def _link_lines(key: str, outcome: Outcome) -> tuple[results.Line, ...]:

@@ -11,7 +11,7 @@ from engine.outcome import Outcome
 from engine.project import Link
 from engine.seat import SeatLevels
 
-MOST_OWNERS = 5
+MOST_OWNERS = 6
 
 
 @dataclass(frozen=True)
@@ -56,6 +56,17 @@ def levels_of(outcome: Outcome, stage: str) -> tuple[Levels, ...]:
     return tuple(_node(node, nodes) for node in nodes)
 
 
+def node_lines(outcome: Outcome, stage: str) -> tuple[Line, ...]:
+    """What stands at a stage's inputs and outputs; nothing where its table of levels shows just these."""
+    nodes = [node for node in outcome.nodes if node.stage == stage]
+    if not outcome.sections(stage):
+        return ()
+    return tuple(
+        Line(_node_name(node, nodes).capitalize(), words.level(node.level, node.unit, muted=node.muted))
+        for node in nodes
+    )
+
+
 def seat_lines(seat: SeatLevels) -> tuple[Line, ...]:
     """What a seat hears."""
     off = seat.off_target
@@ -65,9 +76,12 @@ def seat_lines(seat: SeatLevels) -> tuple[Line, ...]:
         Line("Peak, as a sine", words.level(seat.peak, "dB SPL", muted=True)),
     ]
     if off is not None:
+        lines.append(Line("Target", words.level(seat.target, "dB SPL")))
         # A seat is on target within half a dB: DESIGN 5.8.
         lines.append(Line("Off target", words.gain(off), "mend" if abs(off) > 0.55 else ""))
     lines.append(Line("Hiss", _spl(seat.hiss_a, "dB(A)")))
+    if seat.ambient is not None:
+        lines.append(Line("The room itself", seat.ambient.name.replace(" dB", words.THIN + "dB")))
     if seat.hiss_margin is not None:
         where = "" if seat.margin_band_hz is None else f" at {words.hertz(seat.margin_band_hz)}"
         over = seat.hiss_margin < 0.0
@@ -145,13 +159,16 @@ NO_GAIN = ""
 
 
 def _node(node: NodeLevels, among: Sequence[NodeLevels]) -> Levels:
-    alike = sum(each.direction == node.direction for each in among)
-    side = "input" if node.direction == "in" else "output"
-    name = node.port.replace("_", " ") if alike > 1 else side
     return Levels(
-        name, node.unit, NO_GAIN, _muted(node.level), words.number(node.clip), words.number(node.peak_margin),
+        _node_name(node, among), node.unit, NO_GAIN, _muted(node.level), words.number(node.clip), words.number(node.peak_margin),
         words.number(node.noise), node.peak_margin is not None and node.peak_margin < 0.0,
     )  # fmt: skip
+
+
+def _node_name(node: NodeLevels, among: Sequence[NodeLevels]) -> str:
+    alike = sum(each.direction == node.direction for each in among)
+    side = "input" if node.direction == "in" else "output"
+    return node.port.replace("_", " ") if alike > 1 else side
 
 
 def _muted(level: float | None) -> str:

@@ -17,7 +17,8 @@ from engine.stages.declare import ControlRange, ControlSpec
 HANDLE_PX = 6.0  # its radius
 FINE = 0.1  # of the hand's way, with shift
 WHEEL_STEP = 120.0
-WHEEL_REST_MS = 400  # a pause as long ends the gesture
+WHEEL_REST_MS = 200  # a pause as long ends the gesture
+SCROLL_REST_S = 0.4  # a wheel that scrolled the card so lately means to go on scrolling
 USUAL_DB, FINE_DB, PAGE_DB = 1.0, 0.1, 6.0
 PAGE_STEPS = 10
 _STEPS = {Qt.Key.Key_Up: 1, Qt.Key.Key_Right: 1, Qt.Key.Key_Down: -1, Qt.Key.Key_Left: -1,
@@ -225,4 +226,4 @@ class WheelGate:
 
     def is_open(self) -> bool:
         """Whether the card has been at rest."""
-        return time.monotonic() - self._scrolled_s > WHEEL_REST_MS / 1000.0
+        return time.monotonic() - self._scrolled_s > SCROLL_REST_S

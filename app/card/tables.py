@@ -43,12 +43,14 @@ class Lines(Painted):
         super().__init__(inks, name)
         self._read = read
         self.lines: tuple[Line, ...] = ()
+        self.hide()  # takes no room while it has nothing to say
 
     def show_outcome(self, outcome: Outcome) -> None:
         lines = self._read(outcome)
         if lines != self.lines:
             self.lines = lines
-            self.setFixedHeight(max(1, len(lines) * LINE_PX))
+            self.setFixedHeight(len(lines) * LINE_PX)
+            self.setVisible(bool(lines))
             self.tell("; ".join(f"{line.label} {line.text}" for line in lines))
             self.update()
 

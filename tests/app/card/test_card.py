@@ -111,6 +111,31 @@ def test_a_seat_says_what_it_hears_who_owns_the_hiss_and_how_far_its_loudspeaker
     assert bench.document.outcome.seats[0].level == pytest.approx(seat.level - 6.02, abs=0.6)
 
 
+def test_a_seat_sets_what_each_loudspeaker_loses_off_its_axis(bench):
+    """At the edge of the rated angle a loudspeaker is 6 dB down (IEC 60268-5, coverage angle)."""
+    bench.select("seat")
+    on_axis = bench.document.outcome.seats[0].level
+    type_over(bench.figure("off_axis_db").field, "6 dB")
+    bench.document.flush()
+    assert bench.entries == 1
+    assert bench.document.outcome.seats[0].level == pytest.approx(on_axis - 6.0, abs=1e-6)
+
+
+def test_a_microphone_is_not_asked_for_a_loss_off_axis(bench):
+    link = next(each for each in bench.document.project.links if each.target.startswith("microphone"))
+    bench.document.select([link.id])
+    assert "off_axis_db" not in bench.card.pane.contents.absent
+
+
+def test_inputs_and_outputs_stand_over_the_table_of_sections(bench):
+    bench.select("power_amplifier")
+    lines = {line.label: line.text for line in bench.card.pane.findChild(Lines).lines}
+    key = bench.key("power_amplifier")
+    for label, direction in (("Input", "in"), ("Output", "out")):
+        level = bench.document.outcome.node(key, direction).level
+        assert lines[label] == f"{level:+.1f}\u202fdBu".replace("-", "−")
+
+
 def test_pressing_an_owner_of_the_hiss_goes_to_it(bench):
     bench.select("seat")
     bar = bench.card.pane.findChild(Budget).bars[0]
