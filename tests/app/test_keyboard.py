@@ -14,7 +14,7 @@ from engine import store
 from engine.outcome import evaluate
 from engine.project import Project
 from tests.app.keyboard_hand import Keyboard
-from tests.app.test_window import Answers
+from tests.app.window_hand import Answers
 
 # The offscreen platform cannot raise a menu, nor take the keyboard for it.
 pytestmark = pytest.mark.qt_log_ignore("does not support (raise|grabbing)", extend=True)
