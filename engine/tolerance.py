@@ -267,7 +267,9 @@ class _Sampler:
         if len(chunk.level):
             roles = [getattr(seat, "role", "") for seat in seats_of(self.outcome.plan)]
             reference = roles.index("reference") if "reference" in roles else 0
-            nearest = roles.index("nearest") if "nearest" in roles else int(np.argmax(chunk.hiss.mean(axis=1)))
+            nearest = (
+                roles.index("nearest") if "nearest" in roles else int(np.argmax(chunk.hiss.mean(axis=1)))
+            )
             found["level"], found["hiss"] = chunk.level[reference], chunk.hiss[nearest]
         return found
 
@@ -277,7 +279,11 @@ class _Sampler:
             return []
         turns = self.turns[:, : number.size]
         apart = number - number.mean()
-        share = (turns - turns.mean(axis=1, keepdims=True)) @ apart / (turns.std(axis=1) * number.size * apart.std())
+        share = (
+            (turns - turns.mean(axis=1, keepdims=True))
+            @ apart
+            / (turns.std(axis=1) * number.size * apart.std())
+        )
         return [int(each) for each in np.argsort(-np.abs(share), kind="stable")[:HELD_FIGURES]]
 
 

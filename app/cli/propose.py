@@ -42,12 +42,17 @@ def run(argv: Sequence[str]) -> int:
         help="hold a stage or one of its controls, by id or name; may be given several times",
     )  # fmt: skip
     arguments.add_argument(
-        "--amplifiers", choices=("free", "locked"), default="free", help="locked: leave them at their known gain"
+        "--amplifiers",
+        choices=("free", "locked"),
+        default="free",
+        help="locked: leave them at their known gain",
     )
     arguments.add_argument(
         "--alternatives", action="store_true", help="list the ways to place the gain, side by side"
     )
-    arguments.add_argument("-o", "--output", metavar="OUT", type=Path, help="write the project with these settings")
+    arguments.add_argument(
+        "-o", "--output", metavar="OUT", type=Path, help="write the project with these settings"
+    )
     given = arguments.parse_args(argv)
     outcome = read_outcome(given.file)
     wishes = _wishes(outcome.project, given)
@@ -157,7 +162,11 @@ def _side_by_side(outcome: Outcome, ways: Sequence[Alternative]) -> str:
     for each in ways:
         held = each.standing
         found = each.proposal or each.nearest
-        touched = "; ".join(f"{t.name} {t.label.lower()} {t.after}" for t in found.touched) if found else words.NOTHING
+        touched = (
+            "; ".join(f"{t.name} {t.label.lower()} {t.after}" for t in found.touched)
+            if found
+            else words.NOTHING
+        )
         rows.append([
             each.title, words.number(None if held is None else held.margin_db),
             words.number(None if held is None else held.hiss),

@@ -30,8 +30,12 @@ def run(argv: Sequence[str]) -> int:
     """Print the bands; status 0, or 2 where the file cannot be read."""
     from engine.tolerance import spread
 
-    arguments = Arguments("tolerance", "Print what the figures' tolerances leave of headroom, level and hiss.", _MORE)
-    arguments.add_argument("--draws", metavar="N", type=int, default=10_000, help="how many draws, 10 000 unless told")
+    arguments = Arguments(
+        "tolerance", "Print what the figures' tolerances leave of headroom, level and hiss.", _MORE
+    )
+    arguments.add_argument(
+        "--draws", metavar="N", type=int, default=10_000, help="how many draws, 10 000 unless told"
+    )
     arguments.add_argument("--seed", metavar="N", type=int, default=1, help="where the random draws begin")
     given = arguments.parse_args(argv)
     if not 1 <= given.draws <= 1_000_000:
@@ -75,4 +79,7 @@ def _text(outcome: Outcome, found: Tolerance) -> Iterator[str]:
 
 
 def _ends(band: Band | None) -> list[str]:
-    return [words.number(None if band is None else band.low), words.number(None if band is None else band.high)]
+    return [
+        words.number(None if band is None else band.low),
+        words.number(None if band is None else band.high),
+    ]

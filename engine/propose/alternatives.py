@@ -15,6 +15,7 @@ from engine.stages import Stage, template
 from .impossible import Impossible
 from .levers import Hand
 from .proposal import Proposal, Standing, edit_of, standing
+from .protect import reset_limiters
 from .search import pose
 from .wishes import Wishes
 from .working import describe, propose
@@ -68,9 +69,7 @@ def alternatives(
     `progress` hears how much is done, 0 to 1; where it answers False the rest is left out.
     """
     wishes = wishes or Wishes()
-    place_of = {
-        hand: place(outcome, hand) for lever in pose(outcome, wishes).levers for hand in lever.hands
-    }
+    place_of = {hand: place(outcome, hand) for lever in pose(outcome, wishes).levers for hand in lever.hands}
     found: list[Alternative] = []
     for index, way in enumerate(WAYS):
         if progress is not None and progress(index / len(WAYS)) is False:
@@ -122,9 +121,9 @@ def _searched(
         only = replace(wishes, only=free - held)
         has_pads = any(place_of[hand] == "pad" for hand in free)
         if not way.pads or has_pads:
-            results.append(_against(outcome, start, propose(start, only)))
+            results.append(_against(outcome, start, propose(start, only), wishes))
         if way.pads:
-            results += [_against(outcome, padded, propose(padded, only)) for padded in _padded(start)]
+            results += [_against(outcome, padded, propose(padded, only), wishes) for padded in _padded(start)]
     good = [result for result in results if isinstance(result, Proposal)]
     if good:
         best = min(good, key=_rank)
@@ -133,7 +132,13 @@ def _searched(
     least = min(missed, key=lambda each: each.miss_db)
     nearest = least.nearest
     return Alternative(
-        way.name, way.title, None, None if nearest is None else nearest.after, least.miss_db, least.message, nearest
+        way.name,
+        way.title,
+        None,
+        None if nearest is None else nearest.after,
+        least.miss_db,
+        least.message,
+        nearest,
     )
 
 
@@ -170,15 +175,22 @@ def _padded(outcome: Outcome) -> Iterator[Outcome]:
             yield evaluate(outcome.project.with_changes(changes))
 
 
-def _against(outcome: Outcome, start: Outcome, found: Proposal | Impossible) -> Proposal | Impossible:
-    """What was found from another start, told against the project as it is."""
+def _against(
+    outcome: Outcome, start: Outcome, found: Proposal | Impossible, wishes: Wishes
+) -> Proposal | Impossible:
+    """What was found from another start, told against the project as it is, limiters re-set for the way from there."""
     if start is outcome:
         return found
+    near = found if isinstance(found, Proposal) else found.nearest
+    if near is not None:
+        after = near.outcome
+        if resets := reset_limiters(outcome, after, wishes):
+            after = evaluate(after.project.with_changes(resets), after)
+        near = describe(outcome, after, list(near.kept_notes))
     if isinstance(found, Proposal):
-        return describe(outcome, found.outcome, list(found.notes))
-    return replace(
-        found, nearest=None if found.nearest is None else describe(outcome, found.nearest.outcome)
-    )
+        assert near is not None
+        return near
+    return replace(found, nearest=near)
 
 
 def pads_ahead(outcome: Outcome, loss_db: float) -> Changes:
@@ -205,7 +217,12 @@ def pads_ahead(outcome: Outcome, loss_db: float) -> Changes:
         figures = {"loss_db": Figure(text=f"{loss_db:g} dB"), "z_ohm": Figure(text="5 k")}
         name = f"Pad {loss_db:g} dB ahead of {stage.name}"[:80]
         pad = template("pad", key, name, column=stage.column, row=stage.row, count=stage.count, **figures)
-        onward = Link(id=_unused(project.link.keys(), f"{key}-{stage.id}"), source=key, target=stage.id, input=link.input)
+        onward = Link(
+            id=_unused(project.link.keys(), f"{key}-{stage.id}"),
+            source=key,
+            target=stage.id,
+            input=link.input,
+        )
         changes[key] = (None, pad)
         changes[link.id] = (link, link.with_fields(target=key, input="in"))
         changes[onward.id] = (None, onward)

@@ -105,7 +105,7 @@ def build_moves(lever_index: int, lever: Lever, parents: Mapping[int, int], regi
     """
     links = [(region_of[parents[row.row]], region_of[row.row], row) for row in lever.rows]
     left = list(range(len(links)))
-    found = []
+    found: list[Move] = []
     while left:
         first = links[left[0]][0]
         shift: dict[int, Array] = {first: np.zeros(len(lever.values))}

@@ -9,7 +9,7 @@ from math import log10
 from engine.figures import format_db
 from engine.levels import NodeLevels
 from engine.limits import limiter_thresholds
-from engine.outcome import Outcome
+from engine.outcome import Outcome, evaluate
 
 from .proposal import Standing, Touched
 
@@ -27,21 +27,31 @@ def _reason(each: Touched, before: Outcome, after: Outcome) -> str:
         return "Put it in: it lowers level, clip point and the noise from ahead of it together."
     if any(limiter.control == each.control for limiter in stage.limiters()):
         return "Keeps the limit at the loudspeaker where it was, for the gain behind it has changed."
-    old, new = _output(before, each.stage), _output(after, each.stage)
-    gain = _gain(after, each.stage) - _gain(before, each.stage)
-    if new is None or old is None or new.level is None or old.level is None:
-        return "Settings on the way."
+    port, gain = _effect(each, after)
+    node = after.node(each.stage, "out", port)
+    if node.level is None:
+        return "Nothing passes here."
     if gain > SMALL_DB:
-        rise = new.level - old.level
+        old = before.node(each.stage, "out", port).level
+        rise = 0.0 if old is None else node.level - old
         words = f"Gives {_db(gain)} more here"
         if rise > SMALL_DB:
-            words += f": it now sends {_level(new)}{_left(new)}, so what adds noise behind it counts {_db(rise)} less"
+            words += f": with all ahead of it, it now sends {_level(node)}, {_db(rise)} more{_left(node)}"
+            words += f"; noise added behind it counts {_db(rise)} less"
         return f"{words}."
     if gain < -SMALL_DB:
-        words = f"Takes {_db(-gain)} out here"
-        owner = _owner_fall(each.stage, before, after)
-        return f"{words}{owner}{_left(new)}."
-    return f"Moves its own noise and clip point: it sends {_level(new)}{_left(new)}."
+        return f"Takes {_db(-gain)} out here{_owner_fall(each.stage, before, after)}{_left(node)}."
+    return f"Moves its own noise and clip point: it sends {_level(node)}{_left(node)}."
+
+
+def _effect(each: Touched, after: Outcome) -> tuple[str, float]:
+    """The output a control works on most, and the gain it has given it [dB], all other controls as they are now."""
+    stage = after.project.stage[each.stage]
+    ports = [port.name for port in stage.outputs() if not port.tap]
+    back = stage.with_control(each.control, each.value_before)
+    held = evaluate(after.project.with_changes({stage.id: (stage, back)}), after)
+    gains = [(port, _gain(after, each.stage, port) - _gain(held, each.stage, port)) for port in ports]
+    return max(gains, key=lambda pair: abs(pair[1]))
 
 
 def _owner_fall(stage: str, before: Outcome, after: Outcome) -> str:
@@ -69,22 +79,12 @@ def _left(node: NodeLevels) -> str:
     return f", {_db(abs(node.peak_margin))} {side} at its output"
 
 
-def _output(outcome: Outcome, stage: str) -> NodeLevels | None:
-    try:
-        return outcome.node(stage, "out")
-    except KeyError:
-        return None
-
-
-def _gain(outcome: Outcome, stage: str) -> float:
-    """Gain of a stage's programme from its first input to its first output [dB]; 0 where it has not both."""
-    try:
-        into, out_of = outcome.node(stage, "in"), outcome.node(stage, "out")
-    except KeyError:
-        return 0.0
-    if into.level is None or out_of.level is None:
-        return 0.0
-    return out_of.level - into.level
+def _gain(outcome: Outcome, stage: str, port: str) -> float:
+    """Level of a stage's output over that at its first input, or alone where it is a source [dB]."""
+    out_of = outcome.node(stage, "out", port).level
+    inputs = outcome.project.stage[stage].inputs()
+    into = outcome.node(stage, "in").level if inputs else 0.0
+    return 0.0 if into is None or out_of is None else out_of - into
 
 
 def gains_and_costs(before: Standing, after: Standing) -> Iterator[str]:
@@ -98,7 +98,11 @@ def gains_and_costs(before: Standing, after: Standing) -> Iterator[str]:
         yield (
             f"Hiss at {after.seat} {format_db(before.hiss, 'dB SPL')}, then {format_db(after.hiss, 'dB SPL')}: "
             f"{after.owner}, owns {after.owner_share * 100:.0f} % of it"
-            + (f", where {before.owner}, owned {before.owner_share * 100:.0f} %." if before.owner != after.owner else ".")
+            + (
+                f", where {before.owner}, owned {before.owner_share * 100:.0f} %."
+                if before.owner != after.owner
+                else "."
+            )
         )
     if before.level is not None and after.level is not None:
         aim = "" if after.target is None else f", target {format_db(after.target, 'dB SPL')}"
@@ -115,9 +119,11 @@ def limiter_notes(before: Outcome, after: Outcome) -> Iterator[str]:
         through = (each.present + each.gain_db) - (known.present + known.gain_db)
         if abs(through) > 0.25:
             side = "more" if through > 0.0 else "less"
+            moved = each.present != known.present
+            why = "its threshold can go no further" if moved else "its threshold may not be moved"
             yield (
-                f"To be re-set: the {each.sort} limiter of {each.limiter_name} lets {_db(abs(through))} {side} through to "
-                f"{each.loudspeaker_name} than before; its threshold is locked."
+                f"The {each.sort} limiter of {each.limiter_name} lets {_db(abs(through))} {side} through to "
+                f"{each.loudspeaker_name} than before: {why}."
             )
 
 

@@ -13,12 +13,14 @@ from engine.loudspeaker import loudspeakers_of
 from engine.outcome import Outcome
 from engine.rows import Array
 
-from .cells import Due, Region, Web
+from .bounds import NoWalk, trimmed
+from .cells import Due, Web
 from .levers import Lever, MovedRow
+from .passes import FLOOR_DB
 from .proposal import Proposal
 from .rings import cut_rings, side_by_side
-from .search import FLOOR_DB, WINDOW_DB, Problem, pose, windowed
-from .walk import Found, NoWalk, Walk, lever_positions, trimmed
+from .search import WINDOW_DB, Problem, pose, windowed
+from .walk import Found, Walk, lever_positions
 from .wishes import Wishes
 
 STEP = 0.5
@@ -94,7 +96,9 @@ def is_between_steps(problem: Problem, stage: str) -> bool:
 def _silent(web: Web) -> Web:
     """The web without noise, costs and dues."""
     regions = [replace(region, noise=0.0, dues=[]) for region in web.regions]
-    moves = [replace(move, noise=np.zeros_like(move.noise), cost=np.zeros_like(move.cost)) for move in web.moves]
+    moves = [
+        replace(move, noise=np.zeros_like(move.noise), cost=np.zeros_like(move.cost)) for move in web.moves
+    ]
     return replace(web, regions=regions, moves=moves)
 
 
@@ -130,7 +134,9 @@ def _cheapest(web: Web, floor_db: float, *, around: bool = False) -> tuple[Web, 
 # -- what would help -------------------------------------------------------------------------------------------
 
 
-def reliefs(outcome: Outcome, wishes: Wishes, corrections: dict[str, float] | None = None) -> tuple[Relief, ...]:
+def reliefs(
+    outcome: Outcome, wishes: Wishes, corrections: dict[str, float] | None = None
+) -> tuple[Relief, ...]:
     """The least changes, one sort at a time, that let a search succeed: target, amplifier, pad, loudspeaker. Least first."""
     found = [
         *_lower_target(pose(outcome, wishes, corrections)),
@@ -165,7 +171,9 @@ def _equipment(outcome: Outcome, wishes: Wishes, corrections: dict[str, float]) 
             continue
         made = _Virtual(rows, sign, is_ahead)
         problem = pose(outcome, wishes, corrections, made)
-        index = {lever: lever_index for lever_index, lever in enumerate(problem.levers) if lever.hands[0][1] == ""}
+        index = {
+            lever: lever_index for lever_index, lever in enumerate(problem.levers) if lever.hands[0][1] == ""
+        }
         if not index:
             continue
         web = _silent(windowed(problem.web))
@@ -204,10 +212,12 @@ class _Virtual:
             noise = float((plan.rows.noise[row, 0] * reach[row]).sum())
             ahead = margins.at_in_db[row, 0] - (gain if self.is_ahead else still)
             moved = MovedRow(
-                row, gain, np.broadcast_to(ahead, gain.shape), still + margins.at_out_db[row, 0], still, still + noise
+                row,
+                gain,
+                np.broadcast_to(ahead, gain.shape),
+                still + margins.at_out_db[row, 0],
+                still,
+                still + noise,
             )
             found.append(Lever(((stage, ""),), gain[:, None], (moved,)))
         return found
-
-
-__all__ = ["Impossible", "Region", "Relief", "is_between_steps", "least_deviation", "reliefs"]

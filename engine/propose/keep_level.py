@@ -47,7 +47,9 @@ class LevelKeeper:
         lever = reader.lever([follower], nets) if rows else None
         gain = None if lever is None else _gain_at(outcome, self._row, {r.row: r.gain_db for r in lever.rows})
         if lever is None or gain is None or not np.ptp(gain) > 0.0:
-            raise ValueError(f"{called} does not set the level at {project.stage[key].name}: let another control follow")
+            raise ValueError(
+                f"{called} does not set the level at {project.stage[key].name}: let another control follow"
+            )
         order = np.argsort(lever.values[:, 0], kind="stable")
         self._values, self._gain = lever.values[order, 0], gain[order]
 
@@ -63,7 +65,9 @@ class LevelKeeper:
         for place in np.argsort(np.abs(self._gain + change), kind="stable")[: NEAR + 1].tolist():
             both = _moved(before, project, *self._follower, float(self._values[place]))
             found = {**moved, **both}
-            off = abs(_level_db(evaluate(before.with_changes(found), self._outcome), self._row) - self._level_db)
+            off = abs(
+                _level_db(evaluate(before.with_changes(found), self._outcome), self._row) - self._level_db
+            )
             if best is None or off < best[0] - 1e-9:
                 best = (off, found)
             if off < 0.05:

@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from itertools import product
 
 import numpy as np
+from numpy.typing import NDArray
 
 from engine.compile.fill import Table, fill_clip_by_load, fill_net, fill_stage
 from engine.outcome import Outcome
@@ -42,7 +43,7 @@ class MovedRow:
     noise_in: Array
     noise_out: Array
 
-    def at(self, positions: Array) -> MovedRow:
+    def at(self, positions: NDArray[np.intp]) -> MovedRow:
         """The same at some positions."""
         return MovedRow(
             self.row, self.gain_db[positions], self.margin_in[positions], self.margin_out[positions],
@@ -70,9 +71,7 @@ def find_levers(outcome: Outcome, free: Iterable[Hand], weight: Array) -> tuple[
         met = [group for group in groups if group[1] & rows]
         groups = [group for group in groups if not group[1] & rows]
         hands = [each for group in met for each in group[0]]
-        groups.append(
-            ([*hands, hand], rows.union(*(g[1] for g in met)), nets.union(*(g[2] for g in met)))
-        )
+        groups.append(([*hands, hand], rows.union(*(g[1] for g in met)), nets.union(*(g[2] for g in met))))
     return tuple(lever for hands, _, nets in groups if (lever := reader.lever(hands, nets)) is not None)
 
 
@@ -144,7 +143,9 @@ class Reader:
         nets = self.nets_of.get(stage, [])
         if isinstance(answer, PassiveStage):
             return set(nets)
-        impedances = [port.z_ohm for port in (*answer.inputs.values(), *answer.outputs.values())]
+        impedances = [port.z_ohm for port in answer.inputs.values()] + [
+            port.z_ohm for port in answer.outputs.values()
+        ]
         if any(_varies(z) for z in impedances):
             return set(nets)
         shapes = [(n, self.plan.layout.nets[n].shape) for n in nets]
@@ -216,7 +217,9 @@ class Reader:
             gain, noise = table.gain[at], table.noise[at]
             is_node = row in nodes and row not in sections
             if is_node and (_differs(gain, now.gain[row, 0]) or _differs(noise, now.noise[row, 0])):
-                found[row] = self._moved_row(row, count, gain, np.zeros((1, 1)), noise, clip_in, clip_out, in_net=True)
+                found[row] = self._moved_row(
+                    row, count, gain, np.zeros((1, 1)), noise, clip_in, clip_out, in_net=True
+                )
             elif clip_in is not None or clip_out is not None:
                 still, own = now.gain[row, :1], now.noise[row, :1]
                 found[row] = self._moved_row(row, count, still, np.zeros((1, 1)), own, clip_in, clip_out)
@@ -242,14 +245,28 @@ class Reader:
         if np.any(bend > (FLAT_IN_NET_DB if in_net else FLAT_WITHIN_DB)):
             return None
         with np.errstate(divide="ignore"):
-            gain_db = 10.0 * np.log10(np.broadcast_to(gain, (gain.shape[0], axis.size)) @ before / (now @ before))
+            gain_db = 10.0 * np.log10(
+                np.broadcast_to(gain, (gain.shape[0], axis.size)) @ before / (now @ before)
+            )
         peaks = solution.sums[:, PEAK, 0, FLAT]
         reach = self.weight[row]
         return MovedRow(
             row,
             np.broadcast_to(np.where(on, gain_db, -np.inf), count),
-            _margin(clip_in, float(plan.rows.clip_in[row, 0]), float(margins.at_in_db[row, 0]), peaks[parent], count),
-            _margin(clip_out, float(plan.rows.clip_out[row, 0]), float(margins.at_out_db[row, 0]), peaks[row], count),
+            _margin(
+                clip_in,
+                float(plan.rows.clip_in[row, 0]),
+                float(margins.at_in_db[row, 0]),
+                peaks[parent],
+                count,
+            ),
+            _margin(
+                clip_out,
+                float(plan.rows.clip_out[row, 0]),
+                float(margins.at_out_db[row, 0]),
+                peaks[row],
+                count,
+            ),
             np.broadcast_to(np.broadcast_to(ahead, (ahead.shape[0], axis.size)) @ (now * reach), count),
             np.broadcast_to(np.broadcast_to(behind, (behind.shape[0], axis.size)) @ reach, count),
         )

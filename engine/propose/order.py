@@ -35,7 +35,5 @@ def alignment_miss(outcome: Outcome, wishes: Wishes) -> tuple[float, str]:
         lead = -lead
     miss = wishes.by_db - lead
     side = "first" if wishes.alignment == "amplifier first" else "last"
-    words = (
-        f"{format_db(miss, 'dB')} are missing for the amplifiers to clip {side} by {format_db(wishes.by_db, 'dB')}."
-    )
+    words = f"{format_db(miss, 'dB')} are missing for the amplifiers to clip {side} by {format_db(wishes.by_db, 'dB')}."
     return (miss, words) if miss > CLOSE_DB else (0.0, "")

@@ -76,6 +76,7 @@ class Proposal:
     reasons: tuple[str, ...]
     notes: tuple[str, ...]
     outcome: Outcome = field(repr=False)
+    kept_notes: tuple[str, ...] = ()  # those of the search alone
 
     @property
     def is_settled(self) -> bool:
@@ -158,14 +159,19 @@ def touched_by(before: Outcome, after: Outcome) -> tuple[Touched, ...]:
     for key in difference(before.project, after.project):
         old, new = before.project.stage.get(key), after.project.stage.get(key)
         if isinstance(new, Stage) and old is None:
-            there = Touched(key, new.name, "", new.title, "not there", new.summary() or "in the line", None, None, "")
+            there = Touched(
+                key, new.name, "", new.title, "not there", new.summary() or "in the line", None, None, ""
+            )
             found.append((False, order.index(key), there))
         if old is None or new is None:
             continue
         for name, spec, setting in new.controls():
             was = getattr(old, name)
             if was.value != setting.value:
-                marks = marking(spec, old.control_range(name), was), marking(spec, new.control_range(name), setting)
+                marks = (
+                    marking(spec, old.control_range(name), was),
+                    marking(spec, new.control_range(name), setting),
+                )
                 each = Touched(key, new.name, name, spec.label, *marks, was.value, setting.value, spec.unit)
                 found.append((key in amplifiers, order.index(key), each))
     return tuple(each for _, _, each in sorted(found, key=lambda item: item[:2]))

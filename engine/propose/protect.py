@@ -23,7 +23,6 @@ from .levers import Hand
 from .reach import End
 from .wishes import Wishes
 
-
 ON_TARGET_DB = 0.5
 
 
@@ -35,7 +34,11 @@ def free_thresholds(outcome: Outcome, wishes: Wishes) -> frozenset[Hand]:
             continue
         for limiter in stage.limiters():
             hand = (key, limiter.control)
-            if limiter.is_in and getattr(stage, limiter.control).state == "adjustable" and hand not in wishes.locked:
+            if (
+                limiter.is_in
+                and getattr(stage, limiter.control).state == "adjustable"
+                and hand not in wishes.locked
+            ):
                 found.add(hand)
     return frozenset(found)
 
@@ -77,7 +80,9 @@ def _room_db(outcome: Outcome, row: int, curve: Dynamics) -> float:
     lane = PEAK if curve.limiter or curve.detector == "peak" else PROGRAMME
     plan = outcome.plan
     parent = int(plan.graph.first_parent[row])
-    heard = float((outcome.solution.spectra[parent, lane, 0] * plan.rows.gain[row, 0]) @ plan.axis.weights[:, FLAT])
+    heard = float(
+        (outcome.solution.spectra[parent, lane, 0] * plan.rows.gain[row, 0]) @ plan.axis.weights[:, FLAT]
+    )
     threshold = float(np.asarray(curve.threshold).ravel()[0])
     if not heard > 0.0 or not np.isfinite(threshold):
         return np.inf
@@ -106,26 +111,26 @@ def reset_limiters(before: Outcome, after: Outcome, wishes: Wishes) -> Changes:
     """The edit that moves free thresholds against the gain that changed behind them, never letting more through."""
     old = {(each.limiter, each.control, each.loudspeaker): each for each in limiter_thresholds(before.plan)}
     free = free_thresholds(before, wishes)
-    change: dict[Hand, float] = {}
-    made: dict[Hand, float] = {}
+    wanted: dict[Hand, tuple[float, float]] = {}  # threshold, and the gain it is made for
     for each in limiter_thresholds(after.plan):
         hand = (each.limiter, each.control)
         known = old.get((*hand, each.loudspeaker))
-        if hand in free and known is not None:
-            more = each.gain_db - known.gain_db
-            if hand not in change or more > change[hand]:
-                change[hand], made[hand] = more, each.gain_db
-    found: dict[str, tuple[Stage, Stage]] = {}
-    for (key, control), more in change.items():
-        if abs(more) <= RESET_DB:
+        if hand not in free or known is None or known.present is None:
             continue
+        more = each.gain_db - known.gain_db
+        level = known.present - (more if abs(more) > RESET_DB else 0.0)
+        if hand not in wanted or level < wanted[hand][0]:
+            wanted[hand] = level, each.gain_db
+    found: dict[str, tuple[Stage, Stage]] = {}
+    for (key, control), (level, made_for_db) in wanted.items():
         stage = found[key][1] if key in found else after.project.stage[key]
         steps = stage.control_range(control).positions
-        wanted = float(getattr(stage, control).value) - more
-        fitting = steps[steps <= wanted + 1e-6]
-        value = float(fitting[-1] if fitting.size else steps[0])
-        moved = stage.with_control(control, round(value, 6))
+        fitting = steps[steps <= level + 1e-6]
+        value = round(float(fitting[-1] if fitting.size else steps[0]), 6)
+        if abs(value - float(getattr(stage, control).value)) < 1e-9:
+            continue
+        moved = stage.with_control(control, value)
         if control in stage.made_for:
-            moved = moved.with_fields(made_for={**stage.made_for, control: round(made[key, control], 3)})
+            moved = moved.with_fields(made_for={**stage.made_for, control: round(made_for_db, 3)})
         found[key] = (after.project.stage[key], moved)
     return {key: pair for key, pair in found.items() if pair[0] != pair[1]}

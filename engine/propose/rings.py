@@ -8,8 +8,9 @@ from itertools import product
 
 import numpy as np
 
+from .bounds import chosen, is_pinned
 from .cells import Move, Web
-from .walk import chosen, find_cycle, is_pinned
+from .walk import find_cycle
 
 MOST_ALIKE = 8  # ways to reach one shift that are kept when levers stand side by side
 MOST_CHOICES = 64  # of hands that work on several branches
@@ -41,14 +42,20 @@ def _one_of(one: int, other: int, moves: list[Move]) -> Move:
     levers = tuple(lever for move in turned for lever in move.levers)
     for step in sorted(common.tolist(), key=abs):
         ways = [_best_ways(move, step) for move in turned]
-        for way in product(*ways) if np.prod([len(w) for w in ways]) <= MOST_ALIKE else [tuple(w[0] for w in ways)]:
-            picks.append(tuple(place for move, at in zip(turned, way, strict=True) for place in move.picks[at]))
+        for way in (
+            product(*ways) if np.prod([len(w) for w in ways]) <= MOST_ALIKE else [tuple(w[0] for w in ways)]
+        ):
+            picks.append(
+                tuple(place for move, at in zip(turned, way, strict=True) for place in move.picks[at])
+            )
             offsets.append(step)
             margins.append(min(move.margin[at] for move, at in zip(turned, way, strict=True)))
             noises.append(sum(move.noise[at] for move, at in zip(turned, way, strict=True)))
             costs.append(sum(move.cost[at] for move, at in zip(turned, way, strict=True)))
     steps = np.array([[0] * len(offsets), offsets], dtype=np.int64)
-    return Move(levers, tuple(picks), (one, other), steps, np.array(margins), np.array(noises), np.array(costs))
+    return Move(
+        levers, tuple(picks), (one, other), steps, np.array(margins), np.array(noises), np.array(costs)
+    )
 
 
 def _turned(move: Move) -> Move:
@@ -66,9 +73,7 @@ def _best_ways(move: Move, step: int) -> list[int]:
     at = np.flatnonzero(np.abs(move.offsets[1] - step) <= 1)
     kept: list[int] = []
     for place in sorted(at.tolist(), key=lambda p: (move.cost[p], move.noise[p], -move.margin[p], p)):
-        if not any(
-            move.margin[k] >= move.margin[place] and move.noise[k] <= move.noise[place] for k in kept
-        ):
+        if not any(move.margin[k] >= move.margin[place] and move.noise[k] <= move.noise[place] for k in kept):
             kept.append(place)
     return kept
 
@@ -85,7 +90,8 @@ def shared_levers(web: Web) -> list[int]:
 def choices_of(web: Web, shared: list[int]) -> Iterator[dict[int, int]]:
     """Every choice of positions of shared levers, the present first; only their own positions one by one where all are too many."""
     ladders = [
-        sorted({pick[0] for move in web.moves if move.levers == (lever,) for pick in move.picks}) for lever in shared
+        sorted({pick[0] for move in web.moves if move.levers == (lever,) for pick in move.picks})
+        for lever in shared
     ]
     if np.prod([float(len(ladder)) for ladder in ladders]) <= MOST_CHOICES:
         yield from (dict(zip(shared, choice, strict=True)) for choice in product(*ladders))
@@ -93,7 +99,9 @@ def choices_of(web: Web, shared: list[int]) -> Iterator[dict[int, int]]:
     now = dict.fromkeys(shared, 0)
     yield now
     for place in range(1, max(len(ladder) for ladder in ladders)):
-        yield {lever: ladder[min(place, len(ladder) - 1)] for lever, ladder in zip(shared, ladders, strict=True)}
+        yield {
+            lever: ladder[min(place, len(ladder) - 1)] for lever, ladder in zip(shared, ladders, strict=True)
+        }
     for lever, ladder in list(zip(shared, ladders, strict=True))[: MOST_CHOICES // 2]:
         yield from ({**now, lever: place} for place in ladder[1:])
 

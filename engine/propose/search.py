@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 
@@ -11,25 +12,23 @@ from engine.loads import amplifiers_of
 from engine.outcome import Outcome
 from engine.rows import Array
 
+from .bounds import NoWalk, trimmed
 from .cells import STEP_DB, Due, Region, Web, build_moves, gather_rows
 from .costs import lever_cost, meter_dues
 from .levers import Hand, Lever, find_levers
+from .passes import FLOOR_DB, best_pins, cheap_and_quiet, quietest, widest
 from .protect import level_bounds, limiter_margin_db
 from .reach import End, find_ends, noise_reach
-from .rings import choices_of, cut_rings, pin, shared_levers, side_by_side, with_choice
-from .walk import Found, NoWalk, Walk, cost_of, lever_positions, noise_of, trimmed
+from .rings import choices_of, cut_rings, shared_levers, side_by_side, with_choice
+from .walk import cost_of, lever_positions, noise_of
 from .wishes import Wishes, free_hands, held_back_db, wanted_margin_db
 
 WINDOW_DB = 0.5  # a seat within this of its target is on it
 NARROW_DB = 0.1  # tried first, so that nothing is gained by being off the target
-HISS_EQUAL = 10.0 ** (0.5 / 10.0)  # hiss within 0.5 dB counts as equal
 HISS_OF_WINDOW = 10.0 ** ((WINDOW_DB + NARROW_DB) / 10.0)
-FLOOR_DB = -60.0
 MARGIN_EQUAL_DB = 0.5
 PER_DB_LATE = 5.0
 PER_DB_OFF = 0.5  # what a dB off the target costs, within its window
-MOST_MARGIN_DB = 120.0
-RATE_STEPS = 5
 
 
 @dataclass(frozen=True, eq=False)
@@ -133,7 +132,9 @@ def _wish(
 ) -> tuple[tuple[End, int], ...]:
     """Give each end's region its window. Where several ends share one, the reference seat speaks, then one with a target."""
     found = tuple((end, place[end.row]) for end in ends)
-    ranked = sorted(found, key=lambda pair: (not pair[0].is_reference, pair[0].off_db is None, not pair[0].is_seat))
+    ranked = sorted(
+        found, key=lambda pair: (not pair[0].is_reference, pair[0].off_db is None, not pair[0].is_seat)
+    )
     for end, index in ranked:
         region = regions[index]
         if region.wish is not None:
@@ -197,20 +198,50 @@ def _is_better(one: tuple[float, float, float], other: tuple[float, float, float
     return one[2] < other[2] - 1e-9
 
 
+@dataclass(eq=False)
+class _Opened:
+    """A web as a tree: its widest smallest margin up to the wanted one, and the regions pinned to make it one."""
+
+    web: Web
+    tree: Web
+    widest: float
+    pinned: tuple[int, ...]
+
+    @classmethod
+    def of(cls, web: Web, wanted: float) -> _Opened:
+        tree, pinned = cut_rings(web)
+        if pinned:
+            tree = best_pins(web, tree, pinned, wanted)
+        return cls(web, tree, min(widest(tree, wanted), wanted), tuple(pinned))
+
+    @cached_property
+    def noise(self) -> float:
+        """The least noise over programme with that margin kept."""
+        return quietest(trimmed(self.tree, self.widest), self.widest)
+
+    def is_as_good_as(self, wide: _Opened) -> bool:
+        """Whether holding the seats close to their targets costs no margin or hiss beyond what the window itself is worth."""
+        if self.widest < wide.widest - MARGIN_EQUAL_DB - 1e-9 or (self.widest < 0.0 <= wide.widest):
+            return False
+        return bool(self.noise <= wide.noise * HISS_OF_WINDOW)
+
+
 def _search_tree(problem: Problem, web: Web) -> Choice:
     web = trimmed(side_by_side(trimmed(web, FLOOR_DB)), FLOOR_DB)
-    tree, widest, pinned = _opened(problem, web)
+    opened = _Opened.of(web, problem.wanted_db)
     try:
-        close = trimmed(windowed(web, NARROW_DB), FLOOR_DB)
-        close_tree, close_widest, close_pinned = _opened(problem, close)
-        if _is_as_good(close_tree, close_widest, tree, widest):
-            web, tree, widest, pinned = close, close_tree, close_widest, close_pinned
+        close = _Opened.of(trimmed(windowed(web, NARROW_DB), FLOOR_DB), problem.wanted_db)
+        if close.is_as_good_as(opened):
+            opened = close
     except NoWalk:
         pass
-    floor, most = _limits(problem, web, widest)
+    tree, reached = opened.tree, opened.widest
+    floor, most = _limits(problem, opened.web, reached)
     if problem.wishes.alignment == "amplifier last":
-        tree = _driven(problem, tree, widest)
-    found, kept = _cheap_and_quiet(tree, floor, most)
+        tree = _driven(problem, tree, reached)
+    tree = trimmed(tree, floor)
+    noise = opened.noise if floor == reached else quietest(tree, floor)
+    found, kept = cheap_and_quiet(tree, floor, noise, most)
     values = {
         hand: float(value)
         for lever, place in lever_positions(kept, found).items()
@@ -219,25 +250,10 @@ def _search_tree(problem: Problem, web: Web) -> Choice:
         )
     }
     shifts = tuple(shift * STEP_DB for shift in found.shifts)
-    return Choice(values, widest, noise_of(kept, found), cost_of(kept, found), shifts, pinned)
+    return Choice(values, reached, noise_of(kept, found), cost_of(kept, found), shifts, opened.pinned)
 
 
-def _opened(problem: Problem, web: Web) -> tuple[Web, float, tuple[int, ...]]:
-    """The web as a tree, its widest smallest margin up to the wanted one, and the regions pinned for it."""
-    tree, pinned = cut_rings(web)
-    if pinned:
-        tree = _best_pins(web, tree, pinned, problem.wanted_db)
-    return tree, min(_widest(tree, problem.wanted_db), problem.wanted_db), tuple(pinned)
-
-
-def _is_as_good(close: Web, close_widest: float, wide: Web, widest: float) -> bool:
-    """Whether holding the seats close to their targets costs no margin or hiss beyond what the window itself is worth."""
-    if close_widest < widest - MARGIN_EQUAL_DB - 1e-9 or (close_widest < 0.0 <= widest):
-        return False
-    return _quietest(close, close_widest) <= _quietest(wide, widest) * HISS_OF_WINDOW
-
-
-def _driven(problem: Problem, web: Web, widest: float) -> Web:
+def _driven(problem: Problem, web: Web, reached: float) -> Web:
     """The web with a price on margin at what drives the amplifiers: it is to clip ahead of them."""
     plan, margins = problem.outcome.plan, problem.outcome.margins.at_out_db[:, 0]
     regions = list(web.regions)
@@ -247,12 +263,12 @@ def _driven(problem: Problem, web: Web, widest: float) -> Web:
             row = int(plan.graph.first_parent[row])
         if row:
             at = web.region_of[row]
-            due = Due(float(margins[row]) - widest, np.inf, PER_DB_LATE)
+            due = Due(float(margins[row]) - reached, np.inf, PER_DB_LATE)
             regions[at] = replace(regions[at], dues=[*regions[at].dues, due])
     return replace(web, regions=regions)
 
 
-def _limits(problem: Problem, web: Web, widest: float) -> tuple[float, float]:
+def _limits(problem: Problem, web: Web, reached: float) -> tuple[float, float]:
     """The margin to keep [dB] and the noise not to exceed.
 
     Where the wanted margin is out of reach, 0.5 dB less than the best counts as equal, but nothing below 0 dB. Present
@@ -263,116 +279,16 @@ def _limits(problem: Problem, web: Web, widest: float) -> tuple[float, float]:
         [region.margin for region in present.regions] + [float(move.margin[0]) for move in present.moves]
     )
     is_on_target = all(region.low <= 0 <= region.high for region in web.regions)
-    floor = widest
-    if widest < problem.wanted_db and problem.wishes.alignment in ("reserve", "together"):
-        near = max(widest - MARGIN_EQUAL_DB, min(widest, 0.0))
+    floor = reached
+    if reached < problem.wanted_db and problem.wishes.alignment in ("reserve", "together"):
+        near = max(reached - MARGIN_EQUAL_DB, min(reached, 0.0))
         if is_on_target and now_db >= near:
-            floor = min(now_db, widest)
+            floor = min(now_db, reached)
         elif problem.wishes.alignment == "reserve":
             floor = near
     if not is_on_target or now_db < floor - 1e-9:
         return floor, np.inf
-    now = sum(region.noise for region in present.regions) + sum(float(move.noise[0]) for move in present.moves)
+    now = sum(region.noise for region in present.regions) + sum(
+        float(move.noise[0]) for move in present.moves
+    )
     return floor, now * (1.0 + 1e-9)
-
-
-def _widest(tree: Web, wanted: float) -> float:
-    """The widest smallest margin. Bounds alone give a ceiling for it, so that few shifts are left to walk through."""
-    low, high = FLOOR_DB, min(wanted, MOST_MARGIN_DB)
-    if _is_open(tree, high):
-        low = high
-    while high - low > 0.25:
-        middle = 0.5 * (low + high)
-        low, high = (middle, high) if _is_open(tree, middle) else (low, middle)
-    below = 0.5
-    while True:
-        floor = max(low - below, FLOOR_DB)
-        try:
-            return Walk(trimmed(tree, floor)).widest(wanted).value
-        except NoWalk:
-            if floor == FLOOR_DB:
-                raise
-            below *= 4.0
-
-
-def _is_open(web: Web, floor: float, cap: float = np.inf) -> bool:
-    try:
-        trimmed(web, floor, cap)
-    except NoWalk:
-        return False
-    return True
-
-
-def _quietest(web: Web, floor: float) -> float:
-    """The least noise over programme among walks with margins of `floor`; again bounds leave few shifts."""
-    low, high = -300.0, 60.0
-    while high - low > 0.5:
-        middle = 0.5 * (low + high)
-        low, high = (low, middle) if _is_open(web, floor, 10.0 ** (middle / 10.0)) else (middle, high)
-    cap = 10.0 ** ((high + 6.0) / 10.0)
-    while True:
-        try:
-            kept = trimmed(web, floor, cap)
-            found = noise_of(kept, Walk(kept).cheapest(0.0))
-        except NoWalk:
-            cap *= 100.0
-            if cap > 1e30:
-                raise
-            continue
-        if found <= cap:
-            return found
-        cap = found * 1.0001
-
-
-def _cheap_and_quiet(tree: Web, floor: float, most: float) -> tuple[Found, Web]:
-    """The least cost among walks whose hiss is within 0.5 dB of the least: a rate of exchange is raised until it is not."""
-    tree = trimmed(tree, floor)
-    noise = _quietest(tree, floor)
-    if not noise > 0.0:
-        return Walk(tree).cheapest(1.0), tree
-    most = max(min(noise * HISS_EQUAL, most), noise)
-    web = trimmed(tree, floor, most * 1.0001)
-    walk = Walk(web)
-    best = walk.cheapest(1e-9, noise)
-    spread = max(cost_of(web, best), 1e-6)
-    low, high = (HISS_EQUAL - 1.0) / spread, np.inf
-    rate = low
-    for _ in range(RATE_STEPS):
-        found = walk.cheapest(rate, noise)
-        if noise_of(web, found) <= most * (1.0 + 1e-9):
-            if cost_of(web, found) <= cost_of(web, best) + 1e-9:
-                best = found
-            low, rate = rate, (rate * 8.0 if high == np.inf else (rate * high) ** 0.5)
-        else:
-            high, rate = rate, (low * rate) ** 0.5
-    return best, web
-
-
-def _best_pins(web: Web, tree: Web, pinned: list[int], wanted: float) -> Web:
-    """Choose the shifts of pinned regions one after another: the nearest to its wish that is as good as any."""
-    for region in pinned:
-        free = web.regions[region]
-        wish = 0.0 if free.wish is None or free.low <= 0 <= free.high else free.wish
-        around = range(free.low, free.high + 1) if free.wish is not None else _coarse(free.low, free.high)
-        best: tuple[float, int] | None = None
-        for shift in sorted(around, key=lambda s: abs(s * STEP_DB - wish)):
-            try:
-                found = Walk(trimmed(pin(tree, region, shift), FLOOR_DB)).widest(wanted)
-            except NoWalk:
-                continue
-            if best is None or found.value > best[0] + 1e-6:
-                best = (found.value, shift)
-            if best[0] >= wanted:
-                break
-        if best is not None:
-            tree = pin(tree, region, best[1])
-    return trimmed(tree, FLOOR_DB)
-
-
-def _coarse(low: int, high: int) -> range:
-    """Whole decibels around the present."""
-    step = round(1.0 / STEP_DB)
-    return range(max(low, -20 * step) // step * step, min(high, 20 * step) + 1, step)
-
-
-__all__ = ["Choice", "Due", "Problem", "pose", "search", "windowed"]

@@ -8,22 +8,16 @@ either side of them does not depend on one another.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Callable
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from engine.rows import Array
 
-from .cells import STEP_DB, Move, Region, Web
-
-EDGE_DB = 1e-6
-Steps = NDArray[np.int64]
-
-
-class NoWalk(Exception):
-    """No setting of the levers leads to where the ends want to be."""
+from .bounds import NoWalk, Steps, is_pinned
+from .cells import STEP_DB, Region, Web
 
 
 @dataclass(frozen=True)
@@ -33,71 +27,6 @@ class Found:
     value: float
     shifts: tuple[int, ...]
     picks: tuple[int, ...]
-
-
-# -- bounds ----------------------------------------------------------------------------------------------------
-
-
-def trimmed(web: Web, floor_db: float, noise_cap: float = np.inf) -> Web:
-    """The web without the shifts and positions that no walk with margins of `floor_db` and that little noise can take.
-
-    Raises `NoWalk` where nothing is left.
-    """
-    regions = [_bounded(region, floor_db, noise_cap) for region in web.regions]
-    moves = list(web.moves)
-    for _ in range(4 * len(moves) + 4):
-        before = [(region.low, region.high) for region in regions]
-        moves = [_tighten(move, regions, floor_db, noise_cap) for move in moves]
-        if before == [(region.low, region.high) for region in regions]:
-            break
-    if any(region.low > region.high for region in regions):
-        raise NoWalk
-    return replace(web, regions=regions, moves=moves)
-
-
-def _bounded(region: Region, floor_db: float, noise_cap: float) -> Region:
-    low, high = region.low, region.high
-    if np.isfinite(region.margin):
-        high = min(high, int(np.floor((region.margin - floor_db + EDGE_DB) / STEP_DB)))
-    if region.noise > 0.0 and np.isfinite(noise_cap):
-        low = max(low, int(np.ceil(10.0 * np.log10(region.noise / noise_cap) / STEP_DB)))
-    return replace(region, low=low, high=high)
-
-
-def _tighten(move: Move, regions: list[Region], floor_db: float, noise_cap: float) -> Move:
-    low, high = _span(move, regions, floor_db, noise_cap)
-    kept = np.flatnonzero(low <= high)
-    if not kept.size:
-        raise NoWalk
-    for place, index in enumerate(move.regions):
-        region = regions[index]
-        region.low = max(region.low, int((low + move.offsets[place])[kept].min()))
-        region.high = min(region.high, int((high + move.offsets[place])[kept].max()))
-        if region.low > region.high:
-            raise NoWalk
-    return move if kept.size == low.size else chosen(move, kept)
-
-
-def _span(move: Move, regions: list[Region], floor_db: float, noise_cap: float) -> tuple[Steps, Steps]:
-    """The shifts of its first region that each position leaves possible [position]."""
-    lows = np.array([regions[index].low for index in move.regions])[:, None] - move.offsets
-    highs = np.array([regions[index].high for index in move.regions])[:, None] - move.offsets
-    low, high = lows.max(axis=0), highs.min(axis=0)
-    room = np.where(np.isfinite(move.margin), move.margin - floor_db + EDGE_DB, 1e6) / STEP_DB
-    high = np.minimum(high, np.floor(room).astype(np.int64))
-    if np.isfinite(noise_cap):
-        with np.errstate(divide="ignore"):
-            least = np.maximum(10.0 * np.log10(move.noise / noise_cap) / STEP_DB, -1e6)
-        low = np.maximum(low, np.ceil(least).astype(np.int64))
-    return low, high
-
-
-def chosen(move: Move, kept: NDArray[np.intp]) -> Move:
-    """A move with some of its positions."""
-    return replace(
-        move, picks=tuple(move.picks[each] for each in kept.tolist()), offsets=move.offsets[:, kept],
-        margin=move.margin[kept], noise=move.noise[kept], cost=move.cost[kept],
-    )  # fmt: skip
 
 
 # -- the tree ----------------------------------------------------------------------------------------------------
@@ -147,11 +76,6 @@ def _ring(came: dict[int, tuple[int, int]], one: int, other: int) -> list[int]:
     return [*first[: first.index(met) + 1], *second[: second.index(met)]]
 
 
-def is_pinned(region: Region) -> bool:
-    """Whether only one shift is possible."""
-    return region.low == region.high
-
-
 class Walk:
     """Messages over one web that is a tree."""
 
@@ -191,6 +115,7 @@ class Walk:
             self._branch(index, move.regions[0]) for index, move in enumerate(web.moves) if index not in taken
         ]
         self._thin_out()
+        self._kept: dict[int, tuple[Steps, list[Steps], Array | None]] = {}
 
     def _thin_out(self) -> None:
         """Keep the shifts that real steps can make: each region's own list, and where a shift stands in it.
@@ -211,13 +136,13 @@ class Walk:
             raise NoWalk
         self.shifts: list[Steps] = []
         self.index: list[Steps] = []
-        for region, held in zip(regions, bits, strict=True):
-            size = region.high - region.low + 1
+        for span, held in zip(regions, bits, strict=True):
+            size = span.high - span.low + 1
             raw = np.frombuffer(held.to_bytes((size + 7) // 8, "little"), dtype=np.uint8)
             kept = np.flatnonzero(np.unpackbits(raw, bitorder="little")[:size])
             index = np.full(size + 1, kept.size)
             index[kept] = np.arange(kept.size)
-            self.shifts.append(kept + region.low)
+            self.shifts.append(kept + span.low)
             self.index.append(index)
 
     def _moved_bits(self, bits: list[int], branch: Branch, region: int, at: int) -> int:
@@ -255,9 +180,10 @@ class Walk:
         """The walk with the widest smallest margin [dB]; margins above `cap_db` count as equal. Raises `NoWalk`."""
 
         def own(region: Region, shifts: Steps) -> Array:
-            return np.minimum(region.margin - shifts * STEP_DB, cap_db)
+            return np.asarray(np.minimum(region.margin - shifts * STEP_DB, cap_db))
 
-        def of(move: Move, reference: Steps) -> Array:
+        def of(branch: Branch, reference: Steps) -> Array:
+            move = self.web.moves[branch.move]
             return np.minimum(move.margin[:, None] - reference * STEP_DB, cap_db)
 
         return self._solve(own, of, np.minimum, np.argmax, -np.inf)
@@ -271,16 +197,17 @@ class Walk:
                 found = found + rate * dues(region, shifts)
             return np.asarray(found)
 
-        def of(move: Move, reference: Steps) -> Array:
+        def of(branch: Branch, reference: Steps) -> Array:
+            move = self.web.moves[branch.move]
             paid = rate * move.cost[:, None]
             if not move.noise.any():
                 return np.asarray(paid)
-            return np.asarray(move.noise[:, None] / noise_unit * _falls(reference) + paid)
+            return np.asarray(self._noise(branch) / noise_unit + paid)
 
         return self._solve(own, of, np.add, np.argmin, np.inf)
 
     def _solve(
-        self, own: Callable[[Region, Steps], Array], of: Callable[[Move, Steps], Array], join: np.ufunc,
+        self, own: Callable[[Region, Steps], Array], of: Callable[[Branch, Steps], Array], join: np.ufunc,
         pick: Callable[..., NDArray[np.intp]], worst: float,
     ) -> Found:  # fmt: skip
         web = self.web
@@ -295,9 +222,9 @@ class Walk:
             values[region] = value
         total = join.identity if join is np.add else np.inf
         shift_of = [region.low for region in web.regions]
-        for region in web.regions:
-            if is_pinned(region):
-                total = join(total, own(region, np.array([region.low]))[0])
+        for pinned in web.regions:
+            if is_pinned(pinned):
+                total = join(total, own(pinned, np.array([pinned.low]))[0])
         picks = [0] * len(web.moves)
         for branch in self.loose:
             near = web.moves[branch.move].regions[branch.near]
@@ -313,7 +240,9 @@ class Walk:
         for region in self.order:
             for branch in self.below.get(region, ()):
                 move = web.moves[branch.move]
-                picked = int(arguments[branch.move][self.index[region][shift_of[region] - web.regions[region].low]])
+                picked = int(
+                    arguments[branch.move][self.index[region][shift_of[region] - web.regions[region].low]]
+                )
                 picks[branch.move] = picked
                 reference = shift_of[region] - move.offsets[branch.near, picked]
                 for place in branch.far:
@@ -323,23 +252,36 @@ class Walk:
         return Found(float(total), tuple(shift_of), tuple(picks))
 
     def _message(
-        self, branch: Branch, shifts: Steps, values: dict[int, Array], of: Callable[[Move, Steps], Array], join: np.ufunc,
+        self, branch: Branch, shifts: Steps, values: dict[int, Array], of: Callable[[Branch, Steps], Array], join: np.ufunc,
         pick: Callable[..., NDArray[np.intp]], worst: float,
     ) -> tuple[Array, NDArray[np.intp]]:  # fmt: skip
         """What a move and all behind it make of each shift of the near region, and by which position."""
         move = self.web.moves[branch.move]
-        reference = shifts[None, :] - move.offsets[branch.near][:, None]
-        found = np.broadcast_to(of(move, reference), reference.shape)
-        for place in branch.far:
+        if branch.move not in self._kept:
+            reference = shifts[None, :] - move.offsets[branch.near][:, None]
+            places = [
+                self._places(move.regions[place], reference + move.offsets[place][:, None])
+                for place in branch.far
+            ]
+            self._kept[branch.move] = (reference, places, None)
+        reference, places, _ = self._kept[branch.move]
+        found = np.broadcast_to(of(branch, reference), reference.shape)
+        nothing = np.zeros(1) if join is np.add else np.full(1, np.inf)
+        for place, at in zip(branch.far, places, strict=True):
             other = move.regions[place]
-            if is_pinned(self.web.regions[other]):
-                behind = np.zeros(1) if join is np.add else np.full(1, np.inf)
-            else:
-                behind = values[other]
-            at = self._places(other, reference + move.offsets[place][:, None])
+            silent = np.zeros(1) if join is np.add else np.full(1, np.inf)
+            behind = silent if is_pinned(self.web.regions[other]) else values[other]
             found = join(found, np.append(behind, worst)[at])
         argument = pick(found, axis=0)
         return np.take_along_axis(found, argument[None, :], axis=0)[0], argument
+
+    def _noise(self, branch: Branch) -> Array:
+        """A move's own noise at each position and shift of its near region."""
+        reference, places, noise = self._kept[branch.move]
+        if noise is None:
+            noise = self.web.moves[branch.move].noise[:, None] * _falls(reference)
+            self._kept[branch.move] = (reference, places, noise)
+        return noise
 
 
 def _falls(shifts: Steps) -> Array:
@@ -360,10 +302,11 @@ def noise_of(web: Web, found: Found) -> float:
     """Noise over programme at the ends after a walk."""
     own = sum(region.noise * 10.0 ** (-shift * STEP_DB / 10.0)
               for region, shift in zip(web.regions, found.shifts, strict=True))  # fmt: skip
-    return float(own) + sum(
+    moved: float = sum(
         float(move.noise[pick]) * 10.0 ** (-(found.shifts[move.regions[0]]) * STEP_DB / 10.0)
         for move, pick in zip(web.moves, found.picks, strict=True)
     )
+    return float(own) + moved
 
 
 def cost_of(web: Web, found: Found) -> float:
@@ -380,9 +323,3 @@ def lever_positions(web: Web, found: Found) -> dict[int, int]:
         for move, pick in zip(web.moves, found.picks, strict=True)
         for lever, place in zip(move.levers, move.picks[pick], strict=True)
     }
-
-
-__all__: Sequence[str] = (
-    "EDGE_DB", "Found", "NoWalk", "Walk", "chosen", "cost_of", "find_cycle", "is_pinned", "lever_positions", "noise_of",
-    "trimmed",
-)  # fmt: skip

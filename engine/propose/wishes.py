@@ -65,9 +65,9 @@ def free_hands(outcome: Outcome, wishes: Wishes) -> Iterator[Hand]:
         for name, _, setting in project.stage[key].controls():
             hand = (key, name)
             is_free = setting.state == "adjustable" or hand in wishes.freed
-            if is_free and hand not in wishes.locked and hand not in thresholds:
-                if wishes.only is None or hand in wishes.only:
-                    yield hand
+            is_asked = wishes.only is None or hand in wishes.only
+            if is_free and is_asked and hand not in wishes.locked and hand not in thresholds:
+                yield hand
 
 
 def wanted_margin_db(outcome: Outcome, wishes: Wishes) -> float:

@@ -11,13 +11,14 @@ from engine.figures import format_db
 from engine.outcome import Outcome, evaluate
 from engine.project import difference
 
+from .bounds import NoWalk
 from .explain import gains_and_costs, limiter_notes, with_reasons
 from .impossible import Impossible, Relief, is_between_steps, least_deviation, reliefs
 from .order import alignment_miss
+from .passes import FLOOR_DB
 from .proposal import Proposal, edit_of, standing, touched_by
 from .protect import reset_limiters
-from .search import FLOOR_DB, WINDOW_DB, Choice, Problem, pose, search
-from .walk import NoWalk
+from .search import WINDOW_DB, Choice, Problem, pose, search
 from .wishes import Wishes
 
 Progress = Callable[[float], bool | None]
@@ -40,7 +41,9 @@ def propose(
     problem = pose(outcome, wishes)
     report(0.3)
     if not problem.ends:
-        return Impossible("level", 0.0, None, "Nothing sounds at any end of this project: look for a fader that is off or a mute.")  # fmt: skip
+        return Impossible(
+            "level", 0.0, None, "Nothing sounds at any end of this project: look for a fader that is off."
+        )
     notes: list[str] = []
     try:
         choice = search(problem, cancelled=report.cancelled)
@@ -61,7 +64,9 @@ def propose(
     else:
         after = _solved(outcome, wishes, choice)
     if choice.kept_level:
-        notes.append("Paths meet again behind a split here: they were searched with the level where they part held.")
+        notes.append(
+            "Paths meet again behind a split here: they were searched with the level where they part held."
+        )
     found = describe(outcome, after, notes)
     report(0.9)
     if choice.margin_db < -CLIP_DB and (found.after.margin_db or 0.0) < -CLIP_DB:
@@ -69,7 +74,11 @@ def propose(
     miss, words = alignment_miss(after, wishes)
     if miss > 0.0:
         can = wishes.by_db - miss
-        ways = (Relief(f"Ask for {format_db(can, 'dB')} instead.", miss),) if np.isfinite(miss) and wishes.by_db else ()
+        ways = (
+            (Relief(f"Ask for {format_db(can, 'dB')} instead.", miss),)
+            if np.isfinite(miss) and wishes.by_db
+            else ()
+        )
         return Impossible("alignment", miss, found.after.margin_stage, words, ways, found)
     report(1.0)
     return found
@@ -86,7 +95,7 @@ def describe(before: Outcome, after: Outcome, notes: list[str] | None = None) ->
     else:
         reasons.append("The present settings are as good as any within the tolerances: nothing to touch.")
     said = [*(notes or []), *limiter_notes(before, after)]
-    return Proposal(changes, *standings, touched, tuple(reasons), tuple(said), after)
+    return Proposal(changes, *standings, touched, tuple(reasons), tuple(said), after, tuple(notes or ()))
 
 
 def _solved(outcome: Outcome, wishes: Wishes, choice: Choice) -> Outcome:
@@ -126,7 +135,12 @@ def _out_of_reach(problem: Problem, report: _Report) -> Impossible:
     outcome, wishes = problem.outcome, problem.wishes
     off = least_deviation(problem, FLOOR_DB)
     if off is None:
-        return Impossible("level", 0.0, None, "Locked dynamics and limiters leave no way to set the levels: unlock a threshold or a control.")  # fmt: skip
+        return Impossible(
+            "level",
+            0.0,
+            None,
+            "Locked dynamics and limiters leave no way to set the levels: unlock a control.",
+        )
     corrections = {stage: miss for stage, miss in off.items() if abs(miss) > WINDOW_DB}
     nearest: Proposal | None = None
     try:
@@ -141,7 +155,9 @@ def _out_of_reach(problem: Problem, report: _Report) -> Impossible:
     if not problem.levers:
         message = f"{format_db(abs(miss), 'dB')} {_side(miss)} at {name}, and no control that may be moved leads there: unlock one."
         return Impossible("nothing to move", abs(miss), worst, message, (), nearest)
-    message = f"{format_db(abs(miss), 'dB')} {_side(miss)} target at {name} with every free control at its end."
+    message = (
+        f"{format_db(abs(miss), 'dB')} {_side(miss)} target at {name} with every free control at its end."
+    )
     if is_between_steps(problem, worst):
         message = f"{format_db(abs(miss), 'dB')} {_side(miss)} target at {name} is the nearest that the steps of the free controls allow."
     return Impossible("level", abs(miss), worst, message, reliefs(outcome, wishes), nearest)

@@ -72,7 +72,10 @@ def sweep(project: Project, names: set[str]) -> Swept:
         with np.errstate(divide="ignore"):
             levels.append(10.0 * np.log10(solution.flat[:, PROGRAMME]))
     return Swept(
-        tuple(hands), values, np.concatenate(margin), *(np.concatenate(each, axis=1) for each in (at_seat, off, hiss, levels))
+        tuple(hands),
+        values,
+        np.concatenate(margin),
+        *(np.concatenate(each, axis=1) for each in (at_seat, off, hiss, levels)),
     )
 
 

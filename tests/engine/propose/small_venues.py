@@ -11,7 +11,16 @@ from engine.stages import Setting, Stage
 from tests.scenarios.build import amplifier, chain, line, loudspeaker, project, seat, stage
 
 #: The controls that move level; the search has to find them by itself.
-MOVING = {"level_switch", "inserted", "gain_db", "pad", "trim_db", "fader_db", "attenuator_db", "sensitivity_range"}
+MOVING = {
+    "level_switch",
+    "inserted",
+    "gain_db",
+    "pad",
+    "trim_db",
+    "fader_db",
+    "attenuator_db",
+    "sensitivity_range",
+}
 
 
 def figure(text: str) -> Figure:
@@ -44,11 +53,21 @@ def _preamplifier(random: np.random.Generator, id: str) -> Stage:
 
 
 def _pad(random: np.random.Generator, id: str) -> Stage:
-    return stage("pad", id, loss_db=f"{random.choice([6, 10, 12, 20])} dB", z_ohm="2 k", inserted=float(random.integers(0, 2)))
+    return stage(
+        "pad",
+        id,
+        loss_db=f"{random.choice([6, 10, 12, 20])} dB",
+        z_ohm="2 k",
+        inserted=float(random.integers(0, 2)),
+    )
 
 
 def _amplifier(random: np.random.Generator, id: str) -> Stage:
-    ranges = {"range_gains_db": ["32 dB", "26 dB"]} if random.random() < 0.5 else {"gain_db": f"{random.integers(26, 40)} dB"}
+    ranges = (
+        {"range_gains_db": ["32 dB", "26 dB"]}
+        if random.random() < 0.5
+        else {"gain_db": f"{random.integers(26, 40)} dB"}
+    )
     return amplifier(
         id, rated_power_w=[f"{random.choice([200, 500, 1000])} W @ 8 ohm"], lowest_db="-24 dB",
         step_db=f"{random.choice([2, 3, 4])} dB", attenuator_db=0.0, max_input_v=f"{random.integers(14, 24)} dBu",
@@ -63,7 +82,9 @@ def random_chain(seed: int) -> Project:
     """A source, one to three stages, an amplifier, a loudspeaker and a seat with some target."""
     random = np.random.default_rng(seed)
     middle = random.choice(list(MAKERS), size=random.integers(1, 4), replace=False)
-    source = line(level=f"{random.integers(-10, 6)} dBu", crest=f"{random.integers(6, 16)} dB", most="+30 dBu")
+    source = line(
+        level=f"{random.integers(-10, 6)} dBu", crest=f"{random.integers(6, 16)} dB", most="+30 dBu"
+    )
     made = [MAKERS[name](random, str(name)) for name in middle]
     target = f"{random.integers(80, 106)} dB SPL"
     return chain(
@@ -79,7 +100,9 @@ def random_tree(seed: int) -> Project:
     stages: list[Stage] = []
     links: list[str] = []
     for n in range(sources):
-        stages.append(line(f"source{n}", level=f"{random.integers(-6, 5)} dBu", crest="10 dB", most="+30 dBu"))
+        stages.append(
+            line(f"source{n}", level=f"{random.integers(-6, 5)} dBu", crest="10 dB", most="+30 dBu")
+        )
         channel = _channel(random, f"channel{n}")
         if sources == 2:
             # Two strips with equal steps, so that the balance of the mix can be kept.
@@ -116,7 +139,12 @@ def _with_targets(made: Project, random: np.random.Generator) -> Project:
     solved = evaluate(made.with_changes(changes))
     seats = {each.stage: each.level for each in solved.seats}
     aimed = {
-        key: (made.stage[key], made.stage[key].with_fields(target_spl_db=figure(f"{level + random.uniform(-0.4, 0.4):.1f} dB SPL")))
+        key: (
+            made.stage[key],
+            made.stage[key].with_fields(
+                target_spl_db=figure(f"{level + random.uniform(-0.4, 0.4):.1f} dB SPL")
+            ),
+        )
         for key, level in seats.items()
     }
     return made.with_changes(aimed)

@@ -11,7 +11,6 @@ import pytest
 
 from engine.outcome import evaluate
 from engine.propose import Impossible, Wishes, propose
-
 from tests.engine.propose.brute import Swept, sweep
 from tests.engine.propose.small_venues import MOVING, random_chain, random_tree
 
@@ -75,7 +74,11 @@ def test_random_chains(seed):
 def test_random_trees(seed):
     project = random_tree(seed)
     swept = sweep(project, MOVING)
-    strips = [at for at, (stage, control) in enumerate(swept.hands) if stage.startswith("channel") and control == "fader_db"]
+    strips = [
+        at
+        for at, (stage, control) in enumerate(swept.hands)
+        if stage.startswith("channel") and control == "fader_db"
+    ]
     kept = np.ones(len(swept.values), dtype=bool)
     if len(strips) == 2:
         kept = swept.values[:, strips[0]] == swept.values[:, strips[1]]
