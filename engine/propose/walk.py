@@ -269,8 +269,7 @@ class Walk:
         nothing = np.zeros(1) if join is np.add else np.full(1, np.inf)
         for place, at in zip(branch.far, places, strict=True):
             other = move.regions[place]
-            silent = np.zeros(1) if join is np.add else np.full(1, np.inf)
-            behind = silent if is_pinned(self.web.regions[other]) else values[other]
+            behind = nothing if is_pinned(self.web.regions[other]) else values[other]
             found = join(found, np.append(behind, worst)[at])
         argument = pick(found, axis=0)
         return np.take_along_axis(found, argument[None, :], axis=0)[0], argument
